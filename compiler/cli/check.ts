@@ -1,0 +1,76 @@
+/** `tocsin check FILE…`: everything there is to say about policies and libraries. */
+import { type Diagnostic, sortDiagnostics } from "../../grammar/diagnostic.ts";
+import { positionAt } from "../../grammar/source.ts";
+import { applyAllowances } from "../check/allowances.ts";
+import { EXIT, Stop } from "./exit.ts";
+import { type LoadOptions, load } from "./load.ts";
+import { say, sayJson, showDiagnostics } from "./output.ts";
+
+type Options = LoadOptions & { json?: true | undefined; strict?: true | undefined };
+type Checked = { file: string; ok: boolean; summary: string; diagnostics: readonly Diagnostic[] };
+
+/** Checks all files; exit code 1 when one has an error, or with `--strict` a warning. */
+export async function runCheck(files: readonly string[], options: Options): Promise<void> {
+  const checked: Checked[] = [];
+  for (const file of files) {
+    const result = await checkFile(file, options);
+    checked.push(result);
+    if (!options.json) show(result);
+  }
+  if (options.json) sayJson({ files: checked.map(inJson) });
+  if (checked.some(({ ok }) => !ok)) throw new Stop(EXIT.findings);
+}
+
+async function checkFile(file: string, options: Options): Promise<Checked> {
+  const { policy, library, machine, diagnostics } = load(file, options);
+  let all: readonly Diagnostic[] = diagnostics;
+  if (policy && machine) {
+    const { checkContracts } = await import("../review/contracts.ts");
+    all = [...all, ...checkContracts(policy, machine, options.maxStates)];
+  }
+  if (policy) all = applyAllowances(policy.allowances, all);
+  const count = (severity: string) => all.filter((diagnostic) => diagnostic.severity === severity).length;
+  const ok = count("error") === 0 && !(options.strict && count("warning") > 0);
+  const what = library ? "library" : `policy ${policy?.name ?? ""}`;
+  const size = machine ? `, ${plural(machine.states, "state")}` : "";
+  const findings = [plural(count("error"), "error"), plural(count("warning"), "warning")]
+    .filter((words) => !words.startsWith("0"))
+    .join(", ");
+  return { file, ok, summary: findings || `clean (${what}${size})`, diagnostics: sortDiagnostics(all) };
+}
+
+function plural(count: number, word: string): string {
+  return `${count} ${word}${count === 1 ? "" : "s"}`;
+}
+
+function show({ file, summary, diagnostics }: Checked): void {
+  showDiagnostics(diagnostics, process.stdout);
+  say(`${file}: ${summary}`);
+}
+
+function inJson({ file, ok, diagnostics }: Checked): object {
+  return {
+    file,
+    ok,
+    diagnostics: diagnostics.map(({ code, severity, span, message, hint, related, data }) => ({
+      code,
+      severity,
+      message,
+      hint: hint ?? null,
+      file: span.source.path,
+      ...placeOf(span),
+      related: (related ?? []).map((other) => ({
+        message: other.message,
+        file: other.span.source.path,
+        ...placeOf(other.span),
+      })),
+      data: data ?? {},
+    })),
+  };
+}
+
+function placeOf({ source, start, end }: Diagnostic["span"]): object {
+  const from = positionAt(source, start);
+  const to = positionAt(source, end);
+  return { line: from.line, column: from.column, endLine: to.line, endColumn: to.column };
+}

@@ -1,0 +1,71 @@
+/** From a path typed at the command line to a compiled policy: reading, naming, and saying what is wrong. */
+import { realpathSync } from "node:fs";
+import { dirname, sep } from "node:path";
+import { type Diagnostic, diagnose, hasErrors } from "../../grammar/diagnostic.ts";
+import { makeSource } from "../../grammar/source.ts";
+import { type Compilation, compile } from "../compile.ts";
+import type { Machine } from "../machine/automaton.ts";
+import type { Policy } from "../policy.ts";
+import { EXIT, Stop, UsageError } from "./exit.ts";
+import { readText, STANDARD_INPUT } from "./files.ts";
+import { showDiagnostics } from "./output.ts";
+
+export type LoadOptions = {
+  readonly let?: ReadonlyMap<string, string> | undefined;
+  readonly maxStates: number;
+};
+
+/** The name that standard input goes by in messages. */
+const STANDARD_INPUT_NAME = "standard-input.tocsin";
+
+/** Reads and compiles a file; all it has to say is in the diagnostics. A file that is not there is a usage error. */
+export function load(file: string, options: LoadOptions): Compilation {
+  const path = file === STANDARD_INPUT ? STANDARD_INPUT_NAME : file;
+  const text = readText(file);
+  if (text === null) return { diagnostics: [notText(path)] };
+  const lets = options.let ?? new Map<string, string>();
+  return compile(text, {
+    path,
+    read: (wanted) => readLibrary(path, wanted),
+    lets,
+    mostStates: options.maxStates,
+  });
+}
+
+/** Loads a policy that must have a machine; otherwise shows why and stops with exit code 1. */
+export function loadMachine(file: string, options: LoadOptions): { policy: Policy; machine: Machine } {
+  const { policy, machine, library, diagnostics } = load(file, options);
+  const errors = diagnostics.filter(({ severity }) => severity === "error");
+  if (policy && machine && errors.length === 0) return { policy, machine };
+  showDiagnostics(errors, process.stderr);
+  if (library)
+    throw new UsageError(`${file} is a library: it declares no policy, so there is no machine to make`);
+  throw new Stop(EXIT.findings);
+}
+
+/** Ends the command with what is wrong in a question typed at the command line. */
+export function demandAnswer<T>(outcome: { value?: T; diagnostics: readonly Diagnostic[] }, what: string): T {
+  const { value, diagnostics } = outcome;
+  if (value !== undefined && !hasErrors(diagnostics)) return value;
+  const [first] = diagnostics;
+  throw new UsageError(
+    first ? `${what}: ${first.message}${first.hint ? ` (${first.hint})` : ""}` : `${what}: not understood`,
+  );
+}
+
+export function notText(path: string): Diagnostic {
+  const span = { source: makeSource(path, ""), start: 0, end: 0 };
+  return diagnose("not_text", span, `"${path}" is not UTF-8 text`, { hint: "save it as UTF-8" });
+}
+
+/** A library's text, unless it is missing, is not text, or lies outside the policy's folder through a symbolic link. */
+function readLibrary(policyPath: string, path: string): string | null {
+  try {
+    const folder = realpathSync(dirname(policyPath));
+    const real = realpathSync(path);
+    if (!real.startsWith(folder.endsWith(sep) ? folder : folder + sep)) return null;
+    return readText(path);
+  } catch {
+    return null;
+  }
+}

@@ -1,0 +1,121 @@
+/** What a replay says: a line for each signal and each refused reading, and a summary; as text or as JSON lines. */
+import { type Detector, REFUSED, type Reason } from "../../runtime/index.ts";
+import type { Policy } from "../policy.ts";
+import { say, sayJson } from "./output.ts";
+
+export type Reading = {
+  /** The data row from 1 (the last of a subgroup), or the place among trials written out. */
+  readonly row: number;
+  /** One for each statistic; null where letters were given instead of values. */
+  readonly values: readonly (number | string | null)[] | null;
+  readonly letters: readonly (string | null)[];
+  readonly time: string | null;
+  readonly stream: string | null;
+};
+
+export type Reporter = {
+  readonly reading: (detector: Detector, raises: number, reading: Reading) => void;
+  readonly end: (unfinishedRows: number) => void;
+};
+
+/** The reporter that the options ask for. */
+export function reporterFor(policy: Policy, options: { json?: true | undefined }): Reporter {
+  const totals = {
+    trials: 0,
+    refused: 0,
+    raises: new Map<string, number>(policy.signals.map(({ name }) => [name, 0])),
+  };
+  const show = options.json ? showJson : showText;
+  return {
+    reading: (detector, raises, reading) => {
+      if (raises === REFUSED) totals.refused++;
+      else totals.trials++;
+      if (raises === 0) return;
+      const signals = detector.namesOf(raises);
+      for (const name of signals) totals.raises.set(name, (totals.raises.get(name) ?? 0) + 1);
+      show(policy, reading, {
+        trial: detector.trial,
+        refused: raises === REFUSED,
+        signals,
+        because: detector.because(),
+      });
+    },
+    end: (unfinishedRows) => {
+      const { trials, refused } = totals;
+      const signals = Object.fromEntries(totals.raises);
+      if (options.json) sayJson({ summary: { trials, refused, unfinishedRows, signals } }, 0);
+      else say(summaryText(trials, refused, unfinishedRows, totals.raises));
+    },
+  };
+}
+
+type Event = {
+  readonly trial: number;
+  readonly refused: boolean;
+  readonly signals: readonly string[];
+  readonly because: readonly Reason[];
+};
+
+function showJson(policy: Policy, reading: Reading, { trial, refused, signals, because }: Event): void {
+  const { row, values, letters, time, stream } = reading;
+  const byName = <T>(list: readonly T[]) =>
+    Object.fromEntries(policy.alphabets.map(({ name }, at) => [name, list[at]]));
+  sayJson(
+    {
+      trial: refused ? null : trial,
+      row,
+      ...(time === null ? {} : { time }),
+      ...(stream === null ? {} : { stream }),
+      values: values === null ? null : byName(values),
+      letters: byName(letters),
+      signals,
+      ...(refused ? { refused } : {}),
+      because: because.map(({ signal, rule, from, to, complete }) => ({
+        signal,
+        rule,
+        trials: [from, to],
+        complete,
+      })),
+    },
+    0,
+  );
+}
+
+function showText(policy: Policy, reading: Reading, { trial, refused, signals, because }: Event): void {
+  const what = policy.alphabets.map(({ name }, at) => {
+    const value = reading.values?.[at];
+    const letter = reading.letters[at];
+    return [name, value ?? (reading.values ? "missing" : null), letter]
+      .filter((part) => part !== null && part !== undefined)
+      .join(" ");
+  });
+  const place = [
+    ...(reading.stream === null ? [] : [reading.stream]),
+    ...(refused ? [] : [`trial ${trial}`]),
+    `row ${reading.row}`,
+    ...(reading.time === null ? [] : [reading.time]),
+  ];
+  const outcome = refused
+    ? "refused: a value is missing"
+    : `${signals.join(", ")} — ${because.map(reasonText).join("; ")}`;
+  say([...place, ...what, outcome].join("  "));
+}
+
+function reasonText({ rule, from, to, complete }: Reason): string {
+  if (!complete) return `${rule}, began before trial ${from}`;
+  return from === to ? `${rule}, trial ${to}` : `${rule}, trials ${from} to ${to}`;
+}
+
+function summaryText(
+  trials: number,
+  refused: number,
+  unfinishedRows: number,
+  raises: ReadonlyMap<string, number>,
+): string {
+  const counts = [...raises].map(([name, count]) => `${name} ${count}`).join(", ");
+  const parts = [`${trials} ${trials === 1 ? "trial" : "trials"}`, `signals raised: ${counts}`];
+  if (refused > 0) parts.push(`${refused} ${refused === 1 ? "reading" : "readings"} refused`);
+  if (unfinishedRows > 0)
+    parts.push(`${unfinishedRows} ${unfinishedRows === 1 ? "row" : "rows"} left in an unfinished subgroup`);
+  return parts.join("; ");
+}
