@@ -4,7 +4,7 @@ import type { Diagnostic } from "../../grammar/diagnostic.ts";
 import { renderDiagnostic } from "../../grammar/render.ts";
 
 const coloured = (stream: NodeJS.WriteStream) =>
-  stream.isTTY === true && !process.env["NO_COLOR"] && process.env["TERM"] !== "dumb";
+  stream.isTTY === true && !process.env.NO_COLOR && process.env.TERM !== "dumb";
 
 /** Colours for a stream: none unless it is a terminal and NO_COLOR is unset. */
 export function coloursFor(stream: NodeJS.WriteStream): ReturnType<typeof picocolors.createColors> {

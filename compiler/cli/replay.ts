@@ -6,7 +6,7 @@
  * it; the state file is written only when the data were read to their end or the user stopped the command.
  */
 import { createReadStream, fstatSync, type ReadStream, statSync } from "node:fs";
-import type { Detector } from "../../runtime/index.ts";
+import { type Detector, letterOf, type Value } from "../../runtime/index.ts";
 import { askTrials } from "../check/asked.ts";
 import { readCsv } from "../data/csv.ts";
 import type { Policy } from "../policy.ts";
@@ -15,7 +15,7 @@ import { reasonOf, STANDARD_INPUT } from "./files.ts";
 import { demandAnswer, type LoadOptions, loadMachine } from "./load.ts";
 import { warn } from "./output.ts";
 import { followProgress } from "./progress.ts";
-import { type Reading, type Reporter, reporterFor } from "./replay-report.ts";
+import { type Reporter, reporterFor } from "./replay-report.ts";
 import { makeStreams, type Streams } from "./replay-streams.ts";
 
 type Options = LoadOptions & {
@@ -42,7 +42,7 @@ export async function runReplay(file: string, data: string | undefined, options:
     await replayData(policy, streams, data ?? STANDARD_INPUT, report, options);
   }
   streams.save();
-  report.end(streams.unfinished());
+  report.end(streams.unfinishedRows());
 }
 
 function replayLetters(policy: Policy, streams: Streams, text: string, report: Reporter): void {
@@ -59,6 +59,13 @@ function replayLetters(policy: Policy, streams: Streams, text: string, report: R
       stream: null,
     });
   });
+}
+
+/** The letter of each value; null for one that is missing and has no letter. */
+function lettersOfValues(detector: Detector, values: readonly Value[]): (string | null)[] {
+  return detector.machine.statistics.map(
+    (statistic, at) => statistic.letters[letterOf(statistic, values[at])] ?? null,
+  );
 }
 
 /** The letters of a symbol; the first alphabet varies slowest. */
@@ -95,7 +102,7 @@ async function replayData(
   const progress = followProgress(input.stream, input.bytes);
   const interrupted = onInterrupt(() => input.stream.destroy());
   try {
-    for await (const item of readCsv(progress.counted, wanted)) {
+    for await (const item of streams.trials(readCsv(progress.counted, wanted))) {
       if (item.kind === "problems") {
         progress.clear();
         for (const { line, column, what, hint } of item.problems)
@@ -104,10 +111,10 @@ async function replayData(
           );
         throw new Stop(EXIT.findings);
       }
-      streams.observe(item, (detector: Detector, raises: number, reading: Reading) => {
-        if (raises !== 0) progress.clear();
-        report.reading(detector, raises, reading);
-      });
+      const detector = streams.detectorOf(item.stream);
+      const raises = detector.observe(...item.values);
+      if (raises !== 0) progress.clear();
+      report.reading(detector, raises, { ...item, letters: lettersOfValues(detector, item.values) });
     }
   } catch (thrown) {
     if (!interrupted.yes)

@@ -19,6 +19,7 @@ import { raiseRate } from "../analysis/raise-counts.ts";
 import type { RunLengths, StateLaw } from "../analysis/run-lengths.ts";
 import { toDouble } from "../chance/quantity.ts";
 import { showNumber } from "../check/figures.ts";
+import { formulaOf, nameOf as partName } from "../machine/formula.ts";
 import type { Policy, ProcessUse } from "../policy.ts";
 
 /** Shares of the run-length law that a row lists. */
@@ -175,7 +176,18 @@ function firstOf(assessor: Assessor, { signal, letters, start }: RowQuestion): R
   const machine = assessor.attributed();
   if (!machine) return null;
   const columns = assessor.columnsAt(letters, machine.columnOf, machine.columns);
-  return firstCauses(machine, signal, columns);
+  const found = firstCauses(machine, signal, columns);
+  const names = conditionNames(assessor.policy, signal).filter((name) => name in found);
+  return Object.fromEntries(names.map((name) => [name, found[name] ?? 0]));
+}
+
+/** The conditions a raise can be attributed to, in the order of the text. */
+function conditionNames(policy: Policy, signal: SignalChoice): string[] {
+  const signals = signal === "any" ? policy.signals : policy.signals.slice(signal, signal + 1);
+  return signals.flatMap(({ condition }) => {
+    const formula = formulaOf(condition, false);
+    return formula.parts.map((_, part) => partName(formula, part));
+  });
 }
 
 /** The name of a signal, or any. */
