@@ -62,7 +62,7 @@ const common = {
   metafile: true,
   legalComments: "none",
   logLevel: "warning",
-  define: { "process.env.NODE_ENV": '"production"' },
+  define: { "process.env.NODE_ENV": '"production"', TOCSIN_BUILT: "true" },
 };
 
 /** The three bundles; what each was made of is returned. */

@@ -3,9 +3,9 @@ import { describe, expect, it } from "vitest";
 import { compile } from "../../compiler/compile.ts";
 import { machineFile } from "../../compiler/emit/machine-file.ts";
 import { buildAttributedMachine } from "../../compiler/machine/build.ts";
-import { explore } from "../../compiler/machine/explore.ts";
 import { coarsestPartition, equalAutomata, minimise } from "../../compiler/machine/minimise.ts";
 import { compiled, policyOf, ZONE_TESTS } from "./compiled.ts";
+import { rawScan } from "./raw-scan.ts";
 
 describe("numbers of states", () => {
   // A one-sided k-of-m scan needs C(m, k-1) states: orders of the recurrences OEIS A118647 and A120118 for the small ones.
@@ -128,22 +128,3 @@ describe("the state budget", () => {
     expect(compile(text, { mostStates: 20 }).diagnostics[0]?.message).toMatch(/signal t/);
   });
 });
-
-/** Windows of the last m - 1 trials with fewer than k successes, nothing dropped: the scan before it is made canonical. */
-function rawScan(count: number, window: number) {
-  const kept = 2 ** (window - 1) - 1;
-  const ones = (bits: number) => bits.toString(2).replaceAll("0", "").length;
-  return explore(
-    {
-      width: 1,
-      columns: 2,
-      step: (pool, at, column, into) => {
-        const recent = ((pool[at] as number) << 1) | column;
-        const completes = column === 1 && ones(recent) >= count;
-        into[0] = completes ? 0 : recent & kept;
-        return completes ? 1 : 0;
-      },
-    },
-    1_000_000,
-  );
-}
