@@ -60,7 +60,7 @@ export const catalogue = {
   ),
   name_not_allowed: error(
     "name not allowed",
-    "A signal may not be called `all`: `expect all` has a meaning of its own.",
+    "A signal may not be called `all`, for `expect all` has a meaning of its own; nor a let or a parameter `pi`.",
   ),
   unknown_name: error(
     "unknown name",
@@ -82,7 +82,7 @@ export const catalogue = {
   number_domain: error("outside the function's domain", "The function has no value for this argument."),
   number_too_large: error(
     "number out of range",
-    "Exact numbers are kept to a few thousand digits and the range of doubles.",
+    "Exact numbers are kept to 1,000 digits and the range of doubles.",
   ),
   unknown_function: error(
     "unknown function",
@@ -102,7 +102,7 @@ export const catalogue = {
   ),
   count_out_of_range: error(
     "count out of range",
-    "Counts of trials are at least 1, gap limits at least 0, and k is at most m.",
+    "Counts of trials are from 1 to 1,000,000, gap limits from 0, and k is at most m.",
   ),
   // Alphabets and sets
   cut_unowned: error(
@@ -127,7 +127,7 @@ export const catalogue = {
   ),
   too_many_letters: error(
     "too many letters",
-    "The combinations of letters of all alphabets are limited to 65,536.",
+    "The combinations of letters of all alphabets are limited to 65,536, the letters of `markov` to 500.",
   ),
   set_empty: error("empty SET", "The SET holds no trial."),
   assigned_twice: error(

@@ -37,7 +37,16 @@ export function positionAt(source: Source, offset: number): Position {
     else high = middle - 1;
   }
   const lineStart = source.lineStarts[low] ?? 0;
-  return { line: low + 1, column: [...source.text.slice(lineStart, at)].length + 1 };
+  return { line: low + 1, column: countCodePoints(source.text, lineStart, at) + 1 };
+}
+
+function countCodePoints(text: string, start: number, end: number): number {
+  let count = 0;
+  for (let i = start; i < end; i++) {
+    const isSecondHalf = i > start && (text.charCodeAt(i) & 0xfc00) === 0xdc00;
+    if (!isSecondHalf || (text.charCodeAt(i - 1) & 0xfc00) !== 0xd800) count++;
+  }
+  return count;
 }
 
 /** The text of a line counted from 1, without its line break. */
