@@ -7,8 +7,15 @@ import { join } from "node:path";
 import { afterAll, beforeAll, describe, expect, test } from "vitest";
 
 // What the two faces are expected to offer.
-const LIBRARY = ["compile"];
-const RUNTIME: string[] = [];
+const LIBRARY = ["compile", "machineFile", "renderDiagnostic"];
+const RUNTIME = ["Detector", "openMachine"];
+
+// A policy that is used through all three faces, with what it must do on four trials.
+const POLICY = `policy two_high
+zones x: low <= 1 < high
+signal stop when 2 high
+expect stop on low 2 high
+`;
 
 const ROOT = join(import.meta.dirname, "..");
 const temp = mkdtempSync(join(tmpdir(), "tocsin-package-"));
@@ -62,6 +69,27 @@ describe("the installed package", () => {
     const { stdout, stderr, status } = run(join(home, "node_modules/.bin/tocsin"), ["--version"], home);
     expect(status, stderr).toBe(0);
     expect(stdout).toBe("0.1.0\n");
+  });
+
+  test("checks, emits and detects: command, library and runtime agree", () => {
+    writeFileSync(join(home, "two_high.tocsin"), POLICY);
+    const command = (...words: string[]) => run(join(home, "node_modules/.bin/tocsin"), words, home);
+    expect(command("check", "two_high.tocsin")).toMatchObject({
+      status: 0,
+      stdout: expect.stringContaining("clean"),
+    });
+    expect(command("emit", "two_high.tocsin", "--as", "json", "-o", "two_high.json").status).toBe(0);
+    const source = `
+      import { readFileSync } from "node:fs";
+      import { compile, machineFile } from "tocsin";
+      import { Detector, openMachine } from "tocsin/runtime";
+      const { policy, machine } = compile(readFileSync("two_high.tocsin", "utf8"));
+      const byLibrary = machineFile(policy, machine).value;
+      const byCommand = JSON.parse(readFileSync("two_high.json", "utf8"));
+      const detector = new Detector(openMachine(byCommand).machine);
+      const raised = [2, 1, 2, 2].map((value) => detector.observe(value));
+      console.log(JSON.stringify({ same: JSON.stringify(byLibrary) === JSON.stringify(byCommand), raised }));`;
+    expect(JSON.parse(inHome(source))).toEqual({ same: true, raised: [0, 0, 0, 1] });
   });
 
   test("is imported as a library", () => {

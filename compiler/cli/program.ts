@@ -3,7 +3,7 @@
  * called, so that a quick check does not pay for the analysis.
  */
 import { Command, InvalidArgumentError, Option } from "@commander-js/extra-typings";
-import manifest from "../../package.json" with { type: "json" };
+import { VERSION } from "./version.ts";
 
 const wholeNumber =
   (least: number) =>
@@ -43,7 +43,7 @@ export function makeProgram(): Command {
       "Tocsin compiles a signalling policy (a text that says when a stream of process measurements should raise a " +
         "signal) to one minimal machine: the Markov chain of its exact run lengths, and the detector that runs.",
     )
-    .version(manifest.version, "-V, --version", "print the version")
+    .version(VERSION, "-V, --version", "print the version")
     .helpOption("-h, --help", "print this help")
     .showSuggestionAfterError()
     .exitOverride()
