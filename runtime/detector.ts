@@ -9,12 +9,12 @@
  * No reading is ever an error; only calls that no data can cause are (arrays of different lengths, a wrong option).
  */
 import { attribute, type Reason } from "./attribution.ts";
-import { classify, type LetterIndices, letterBlock, stepLetters } from "./loops.ts";
+import { type Cursor, stepLetters, stepValues } from "./loops.ts";
 import type { OpenMachine } from "./open.ts";
 import type { Problem } from "./problems.ts";
 import { breakParts, clearParts, type Parts, startParts, stepParts } from "./reasons.ts";
 import { checkSnapshot, type Snapshot, takeSnapshot } from "./snapshot.ts";
-import { letterOf, type Value, type Zones } from "./statistics.ts";
+import { letterOf, type Value } from "./statistics.ts";
 
 /** Returned for a trial with a missing value, under `missing refuse`. */
 export const REFUSED = 0x80000000;
@@ -31,7 +31,7 @@ export type DetectorOptions = {
 /** Values of one statistic, a trial each: numbers for zones, names or texts for letters. */
 export type ValueColumn = Float64Array | readonly Value[];
 /** Letters of one statistic by index, a trial each; an index that is no letter is a missing value. */
-export type LetterColumn = LetterIndices;
+export type LetterColumn = Uint8Array | Uint16Array;
 
 const MOST_REMEMBERED = 65536;
 
@@ -115,11 +115,9 @@ export class Detector {
       statistic.kind === "zones" &&
       only instanceof Float64Array
     ) {
-      const block = letterBlock(statistic.letters.length);
-      if (block !== null) {
-        this.#runValues(statistic, only, block, raises);
-        return;
-      }
+      const loop = (cursor: Cursor) => stepValues(machine.tables, statistic, only, raises, cursor);
+      this.#run(count, raises, loop);
+      return;
     }
     for (let at = 0; at < count; at++) {
       let symbol = 0;
@@ -132,18 +130,21 @@ export class Detector {
 
   /** The same for letters given by index. */
   observeLetters(letters: LetterColumn | readonly LetterColumn[], raises: Uint32Array): void {
-    const { statistics } = this.machine;
+    const { tables, statistics } = this.machine;
     const columns: readonly LetterColumn[] =
       letters instanceof Uint8Array || letters instanceof Uint16Array ? [letters] : letters;
     const count = this.#countOf(columns, raises);
     if (columns.length === 1 && this.#parts === null) {
-      this.#runLetters(columns[0]!, count, raises, 0);
+      const [only, { letters: names }] = [columns[0]!, statistics[0]!];
+      const loop = (cursor: Cursor) => stepLetters(tables, only, names.length, raises, cursor);
+      this.#run(count, raises, loop);
       return;
     }
     for (let at = 0; at < count; at++) {
       let symbol = 0;
       for (let i = 0; i < columns.length && symbol >= 0; i++) {
-        const [given, { letters: names, missing }] = [columns[i]![at]!, statistics[i]!];
+        const given = columns[i]![at]!;
+        const { letters: names, missing } = statistics[i]!;
         symbol = this.#join(symbol, i, given < names.length ? given : missing);
       }
       raises[at] = symbol < 0 ? this.#miss() : this.#step(symbol);
@@ -192,26 +193,17 @@ export class Detector {
     return [];
   }
 
-  #runValues(zones: Zones, values: Float64Array, block: LetterColumn, raises: Uint32Array): void {
-    for (let from = 0; from < values.length; from += block.length) {
-      const to = Math.min(from + block.length, values.length);
-      classify(zones, values, from, to, block);
-      this.#runLetters(block, to - from, raises, from);
-    }
-  }
-
-  /** The loop reads until a letter that is none; what stands for that is stepped here, and the loop goes on. */
-  #runLetters(letters: LetterColumn, end: number, raises: Uint32Array, shift: number): void {
-    const { tables, statistics } = this.machine;
-    const { letters: names, missing } = statistics[0]!;
+  /** A loop reads until a missing value; what that does is done here, and the loop goes on. */
+  #run(count: number, raises: Uint32Array, loop: (cursor: Cursor) => void): void {
+    const { missing } = this.machine.statistics[0]!;
     const cursor = { offset: this.#offset, at: 0 };
     while (true) {
       const before = cursor.at;
-      stepLetters(tables, letters, end, names.length, raises, shift, cursor);
+      loop(cursor);
       this.#offset = cursor.offset;
       this.#trial += cursor.at - before;
-      if (cursor.at >= end) return;
-      raises[shift + cursor.at] = missing < 0 ? this.#miss() : this.#step(missing);
+      if (cursor.at >= count) return;
+      raises[cursor.at] = missing < 0 ? this.#miss() : this.#step(missing);
       cursor.offset = this.#offset;
       cursor.at++;
     }
