@@ -31,6 +31,7 @@ const steps = [
   },
 ];
 
+/** @param {string} text */
 const say = (text) => process.stdout.write(`${text}\n`);
 
 say("Tocsin: a policy says when a stream of measurements should raise a signal. This one is invented:\n");
@@ -44,5 +45,9 @@ for (const { says, args } of steps) {
   });
   if (status !== 0) process.exit(status ?? 3);
 }
-say("\nA first policy of your own: node dist/tocsin.js start my_policy. More: README.md, and the folders in examples/.");
-say("A detector made by Tocsin is not a certified safety function: local codes and licensed practice decide.");
+say(
+  "\nA first policy of your own: node dist/tocsin.js start my_policy. More: README.md, and the folders in examples/.",
+);
+say(
+  "A detector made by Tocsin is not a certified safety function: local codes and licensed practice decide.",
+);

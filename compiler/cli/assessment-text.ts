@@ -14,7 +14,10 @@ export function assessmentText(policy: Policy, machine: Machine, { letters, runs
   const many = policy.signals.length === 1 ? "signal" : "signals";
   const parts = [`${policy.name}${title}\n${machine.states} states; ${many} ${signals}${cadence}`];
   for (const alphabet of policy.alphabets) parts.push(letterTable(alphabet.name, letters));
-  for (const signal of new Set(runs.map((row) => row.signal)))
+  const shown = new Set(runs.map((row) => row.signal));
+  // Of one signal, "any" says the same again.
+  if (policy.signals.length === 1 && shown.size > 1) shown.delete("any");
+  for (const signal of shown)
     parts.push(
       signalTable(
         policy,

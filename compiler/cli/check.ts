@@ -1,7 +1,6 @@
 /** `tocsin check FILE…`: everything there is to say about policies and libraries. */
-import { type Diagnostic, sortDiagnostics } from "../../grammar/diagnostic.ts";
+import type { Diagnostic } from "../../grammar/diagnostic.ts";
 import { positionAt } from "../../grammar/source.ts";
-import { applyAllowances } from "../check/allowances.ts";
 import { EXIT, Stop } from "./exit.ts";
 import { type LoadOptions, load } from "./load.ts";
 import { say, sayJson, showDiagnostics } from "./output.ts";
@@ -22,21 +21,18 @@ export async function runCheck(files: readonly string[], options: Options): Prom
 }
 
 async function checkFile(file: string, options: Options): Promise<Checked> {
-  const { policy, library, machine, diagnostics } = load(file, options);
-  let all: readonly Diagnostic[] = diagnostics;
-  if (policy && machine) {
-    const { checkContracts } = await import("../review/contracts.ts");
-    all = [...all, ...checkContracts(policy, machine, options.maxStates)];
-  }
-  if (policy) all = applyAllowances(policy.allowances, all);
-  const count = (severity: string) => all.filter((diagnostic) => diagnostic.severity === severity).length;
+  const compilation = load(file, options);
+  const { policy, library, machine } = compilation;
+  const { findingsOf } = await import("../review/findings.ts");
+  const diagnostics = findingsOf(compilation, options.maxStates);
+  const count = (severity: string) => diagnostics.filter((found) => found.severity === severity).length;
   const ok = count("error") === 0 && !(options.strict && count("warning") > 0);
   const what = library ? "library" : `policy ${policy?.name ?? ""}`;
   const size = machine ? `, ${plural(machine.states, "state")}` : "";
   const findings = [plural(count("error"), "error"), plural(count("warning"), "warning")]
     .filter((words) => !words.startsWith("0"))
     .join(", ");
-  return { file, ok, summary: findings || `clean (${what}${size})`, diagnostics: sortDiagnostics(all) };
+  return { file, ok, summary: findings || `clean (${what}${size})`, diagnostics };
 }
 
 function plural(count: number, word: string): string {

@@ -3,28 +3,21 @@
  * renamed, so that an interrupted or failing command leaves the old content or the new, never half of it.
  */
 import { randomBytes } from "node:crypto";
-import {
-  closeSync,
-  existsSync,
-  fsyncSync,
-  openSync,
-  readFileSync,
-  renameSync,
-  rmSync,
-  statSync,
-  writeSync,
-} from "node:fs";
+import { closeSync, existsSync, fsyncSync, openSync, readSync, renameSync, rmSync, writeSync } from "node:fs";
 import { basename, dirname, join } from "node:path";
 import { UsageError } from "./exit.ts";
 
-/** Larger than any policy a person writes; protects memory. */
-const LARGEST_TEXT = 16 * 1024 * 1024;
+/** Larger than any policy a person writes; protects time and memory. */
+const LARGEST_POLICY = 2 ** 20;
 
 export const STANDARD_INPUT = "-";
 
-/** The text of a file, or of standard input for `-`; null when it is not UTF-8 text. A missing file is a usage error. */
-export function readText(path: string): string | null {
-  const bytes = readBytes(path);
+/**
+ * The text of a file, or of standard input for `-`; null when it is not UTF-8 text. A file that is missing, or longer than
+ * `mostBytes`, is a usage error.
+ */
+export function readText(path: string, mostBytes = LARGEST_POLICY): string | null {
+  const bytes = readBytes(path, mostBytes);
   try {
     return new TextDecoder("utf-8", { fatal: true, ignoreBOM: true }).decode(bytes);
   } catch {
@@ -32,16 +25,47 @@ export function readText(path: string): string | null {
   }
 }
 
-function readBytes(path: string): Uint8Array {
+function readBytes(path: string, mostBytes: number): Uint8Array {
   try {
-    if (path === STANDARD_INPUT) return readFileSync(0);
-    const { size } = statSync(path);
-    if (size > LARGEST_TEXT)
-      throw new UsageError(`${path}: ${size} bytes are more than a text of this kind may have`);
-    return readFileSync(path);
+    if (path === STANDARD_INPUT) return readWhole(0, path, mostBytes);
+    const file = openSync(path, "r");
+    try {
+      return readWhole(file, path, mostBytes);
+    } finally {
+      closeSync(file);
+    }
   } catch (thrown) {
     if (thrown instanceof UsageError) throw thrown;
     throw new UsageError(`${path}: ${reasonOf(thrown)}`);
+  }
+}
+
+/** Reads to the end, which a device or a pipe may not have: no further than allowed. */
+function readWhole(file: number, path: string, mostBytes: number): Uint8Array {
+  const chunks: Uint8Array[] = [];
+  let total = 0;
+  for (;;) {
+    const chunk = new Uint8Array(65536);
+    const count = readChunk(file, chunk);
+    if (count === 0) return Buffer.concat(chunks);
+    chunks.push(chunk.subarray(0, count));
+    total += count;
+    if (total > mostBytes)
+      throw new UsageError(`${path}: longer than the ${mostBytes.toLocaleString("en")} bytes it may have`);
+  }
+}
+
+/** A pipe whose writer is slow answers EAGAIN until there is more. */
+function readChunk(file: number, chunk: Uint8Array): number {
+  for (;;) {
+    try {
+      return readSync(file, chunk);
+    } catch (thrown) {
+      const { code } = thrown as NodeJS.ErrnoException;
+      if (code === "EOF") return 0;
+      if (code !== "EAGAIN") throw thrown;
+      Atomics.wait(new Int32Array(new SharedArrayBuffer(4)), 0, 0, 10);
+    }
   }
 }
 

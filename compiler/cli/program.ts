@@ -10,28 +10,30 @@ const wholeNumber =
   (text: string): number => {
     const value = Number(text);
     if (!/^\d+$/.test(text) || !Number.isSafeInteger(value) || value < least)
-      throw new InvalidArgumentError(`a whole number from ${least} is due.`);
+      throw new InvalidArgumentError(`A whole number from ${least} is due.`);
     return value;
   };
 
 const list = (text: string, before: readonly string[] = []): string[] => [...before, text];
 
-const assignment = (
-  text: string,
-  before: ReadonlyMap<string, string> = new Map(),
-): ReadonlyMap<string, string> => {
-  const [, name, value] = /^\s*([A-Za-z_]\w*)\s*=\s*(.+)$/.exec(text) ?? [];
-  if (name === undefined || value === undefined)
-    throw new InvalidArgumentError("write it as name=value, as in d=1.8.");
-  return new Map([...before, [name, value]]);
-};
+/** Reads `name=value`, each time one more; `example` shows how. */
+const assignment =
+  (example: string) =>
+  (text: string, before: ReadonlyMap<string, string> = new Map()): ReadonlyMap<string, string> => {
+    const [, name, value] = /^\s*([A-Za-z_]\w*)\s*=\s*(.+)$/.exec(text) ?? [];
+    if (name === undefined || value === undefined)
+      throw new InvalidArgumentError(`Write it as in ${example}.`);
+    return new Map([...before, [name, value]]);
+  };
 
 const mostStates = () =>
   new Option("--max-states <n>", "the state budget of the machine")
     .argParser(wholeNumber(1))
     .default(2_000_000);
 const lets = () =>
-  new Option("--let <name=value>", "take another value for a let (may be repeated)").argParser(assignment);
+  new Option("--let <name=value>", "take another value for a let (may be repeated)").argParser(
+    assignment("--let d=1.8"),
+  );
 const json = () => new Option("--json", "print JSON for programs");
 
 type Program = Pick<Command, "command">;
@@ -46,6 +48,8 @@ export function makeProgram(): Command {
     .version(VERSION, "-V, --version", "print the version")
     .helpOption("-h, --help", "print this help")
     .showSuggestionAfterError()
+    .showHelpAfterError("(--help says more)")
+    .helpCommand("help [command]", "print the help of a command")
     .exitOverride()
     .configureOutput({ writeErr: (text) => process.stderr.write(text.replace(/^error: /, "tocsin: ")) })
     .addHelpText(
@@ -145,7 +149,7 @@ function addReplay(program: Program): void {
     .option(
       "--column <statistic=name>",
       "the column of a statistic, when it is named otherwise (may be repeated)",
-      assignment,
+      assignment("--column fill=Weight"),
     )
     .addOption(
       new Option("--subgroup <n>", "take the mean of every n rows as one value").argParser(wholeNumber(1)),

@@ -22,8 +22,11 @@ import { showDiagnostics } from "./output.ts";
 const STATE_FORMAT = "tocsin-replay";
 const STATE_VERSION = 1;
 
+/** A string cannot be much longer. */
+const LARGEST_STATE = 2 ** 28;
+
 /** Each stream keeps its last trials to explain its signals; this many fit a modest machine. */
-const MOST_STREAMS = 100_000;
+const MOST_STREAMS = 50_000;
 
 export type Streams = {
   /** The detector of a stream; null where streams are not told apart. */
@@ -123,7 +126,7 @@ function readState(
 }
 
 function parseState(path: string): Record<string, unknown> {
-  const text = readText(path);
+  const text = readText(path, LARGEST_STATE);
   try {
     const state: unknown = JSON.parse(text ?? "");
     if (typeof state === "object" && state !== null && !Array.isArray(state))
