@@ -121,7 +121,7 @@ function clothRolls() {
   return { "cloth-inspection/rolls.csv": csv(["roll", "loom", "verdict"], rows) };
 }
 
-/** Two hours of one rack. The cooling fails at minute 70, is back at 85; the front sensor falls silent at minute 110. */
+/** Two hours of one rack. The cooling fails with minute 71, is back with 86; the front sensor is silent from minute 111. */
 function rackHeat() {
   const { normal } = draws(16);
   const rows = times(120, (index) => {
@@ -155,11 +155,11 @@ function filterTurbidity() {
 
 /** Ten minutes before and ten after midnight, a reading a second; a bearing wears from 23:55 on, and the radio drops some. */
 function pumpVibration() {
-  const { erlang2, uniform } = draws(19);
+  const { erlang2, uniform } = draws(48);
   const rows = times(1200, (index) => {
     const wear = index < 300 ? 1 : 1 + Math.min(1, (index - 300) / 600);
     const value = erlang2(wear).toFixed(2);
-    return [clock(11, 23, 3000 + index).slice(11), uniform() < 0.005 ? "" : value];
+    return [clock(11, 23, 3000 + index).slice(11), uniform() < 0.01 ? "" : value];
   });
   return {
     "pump-vibration/before-midnight.csv": csv(["time", "velocity"], rows.slice(0, 600)),

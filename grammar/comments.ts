@@ -1,8 +1,8 @@
 /**
  * Where the comments of a file stand in its canonical text. The file becomes a list of items: declarations and comments on
- * lines of their own, each with or without a blank line before it. A comment after a declaration on its line stays there; one
- * inside a declaration stands before the next piece that the tree gives a place, on its own line or at the end of one as
- * it was written. If no such piece is left, it follows the declaration, just as it will be read the next time.
+ * lines of their own, each with or without a blank line before it. A comment after a declaration on its line stays there;
+ * one inside a declaration stays between the pieces where it was, on its own line or at the end of one, but never before
+ * a comma or a closing bracket. If no piece is left after it, it follows the declaration, as it will be read next time.
  */
 import type { Piece } from "./layout.ts";
 import { declarationPieces } from "./print-declaration.ts";
@@ -63,17 +63,67 @@ export function itemsOf({ source, declarations, comments }: FileTree): Item[] {
   return items;
 }
 
-/** The place of each comment inside a declaration; `left` are those after which no piece has a known place. */
+/** The place of each comment inside a declaration; `left` are those after which no piece stands. */
 function placeInner(text: string, pieces: readonly Piece[], comments: readonly Comment[]) {
   const inner: InnerComment[] = [];
   const left: Comment[] = [];
+  const places = comments.length > 0 ? placesOf(text, pieces, comments) : [];
+  let index = 0;
   for (const comment of comments) {
-    const index = pieces.findIndex((piece) => (piece.at ?? -1) >= comment.span.start);
+    while (index < pieces.length && (places[index] ?? 0) < comment.span.start) index++;
+    while (/^[,)\]}]$/.test(pieces[index]?.text ?? "")) index++;
     const ownLine = startsLine(text, comment) || inner.at(-1)?.index === index;
-    if (index === -1) left.push(comment);
+    if (index === pieces.length) left.push(comment);
     else inner.push({ index, text: comment.text.trimEnd(), ownLine });
   }
   return { inner, left };
+}
+
+/**
+ * Where each piece stands in the source; -1 where that is unknown. The tree has no place for most signs and words: they
+ * are looked for between the pieces that have one, outside comments.
+ */
+function placesOf(text: string, pieces: readonly Piece[], comments: readonly Comment[]): number[] {
+  const nextPlaces: number[] = [];
+  let next = text.length;
+  for (const { at } of pieces.toReversed()) {
+    nextPlaces.push(next);
+    next = at ?? next;
+  }
+  let from = next;
+  return pieces.map(({ text: word, at }) => {
+    const next = nextPlaces.pop() ?? text.length;
+    const found = at ?? findOutside(text, word, from, next, comments);
+    if (found !== -1) from = found + word.length;
+    return found;
+  });
+}
+
+function findOutside(
+  text: string,
+  word: string,
+  from: number,
+  to: number,
+  comments: readonly Comment[],
+): number {
+  for (let at = text.indexOf(word, from); at !== -1 && at < to; at = text.indexOf(word, at + 1)) {
+    const comment = comments[lastBefore(comments, at)];
+    if (comment === undefined || comment.span.end <= at) return at;
+    at = comment.span.end - 1;
+  }
+  return -1;
+}
+
+/** The last comment that begins at an offset or before it. */
+function lastBefore(comments: readonly Comment[], offset: number): number {
+  let low = -1;
+  let high = comments.length - 1;
+  while (low < high) {
+    const middle = Math.ceil((low + high) / 2);
+    if ((comments[middle]?.span.start ?? Infinity) <= offset) low = middle;
+    else high = middle - 1;
+  }
+  return low;
 }
 
 function startsLine(text: string, comment: Comment): boolean {

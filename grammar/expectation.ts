@@ -61,6 +61,7 @@ export function missing(failure: Failure): TokenType[] {
 }
 
 function carriesOn({ type, rule }: Expected, failure: Failure): boolean {
+  if (type === signs.openParen) return rule === "operands" || rule === "measure";
   if (type === signs.minus) return rule === "expression";
   if (type === reserved.of) return rule === "counted" || rule === "run";
   if (type === reserved.within) return rule === "link" && failure.complete;
@@ -85,7 +86,7 @@ export function expectation(failure: Failure): string {
     if (isSet && (setRules.has(one.rule) || one.rule === "item")) continue;
     if (isExpression && expressionRules.has(one.rule)) continue;
     if (phrases.has("a model") && modelRules.has(one.rule)) continue;
-    phrases.add(phrase(one));
+    phrases.add(phrase(one, failure));
   }
   if (failure.complete) phrases.add("the next declaration");
   return either([...phrases]) || either(expectedWords(failure).map(quote));
@@ -96,10 +97,11 @@ const conditionRules = new Set(["unary", "atom", "pattern", "counted", "count", 
 const expressionRules = new Set(["primary", "signed"]);
 const modelRules = new Set(["mass", "model", "distribution"]);
 
-function phrase({ type, rule }: Expected): string {
+function phrase({ type, rule }: Expected, { index }: Failure): string {
   if (rule === "count") return "a count";
   switch (type) {
     case Name:
+      if ((rule === "zones" || rule === "missing") && index > 2) return "the name of a letter";
       return namesByRule[rule] ?? "a name";
     case Text:
       return "text in double quotes";

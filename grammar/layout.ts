@@ -41,30 +41,38 @@ function spaceBefore({ tight, column, pad = 0 }: Piece): string {
 
 /** Pieces on as few lines as they need; all but the first (or all, after a comment) are indented. */
 export function fill(pieces: readonly Piece[], continued = false): string[] {
-  const lines: string[] = [continued ? continuation : ""];
-  let empty = true;
-  const place = (part: readonly Piece[]): void => {
-    const [first] = part;
-    if (!first) return;
-    const text = flat(part);
-    const line = lines.at(-1) ?? "";
-    const gap = empty ? "" : spaceBefore(first);
-    const inner = innerBreaks(part);
-    if (widthOf(line + gap + text) <= lineWidth || (empty && inner === undefined)) {
-      lines[lines.length - 1] = line + gap + text;
-      empty = false;
-    } else if (!empty && (first.breakLevel ?? 0) > 0) {
-      lines.push(continuation);
-      empty = true;
-      place(part);
-    } else if (inner === undefined) {
-      lines[lines.length - 1] = line + gap + text;
-    } else {
-      for (const segment of inner) place(segment);
-    }
-  };
-  place(pieces);
+  const lines = [continued ? continuation : ""];
+  place(lines, pieces, true);
   return lines;
+}
+
+/** Adds pieces to the last line or, from a break on, to new ones; `isFirst` when nothing stands on the line yet. */
+function place(lines: string[], pieces: readonly Piece[], isFirst: boolean): void {
+  const [first] = pieces;
+  if (!first) return;
+  const line = lines.at(-1) ?? "";
+  const whole = line + (isFirst ? "" : spaceBefore(first)) + flat(pieces);
+  const segments = innerBreaks(pieces);
+  if (widthOf(whole) <= lineWidth || (segments === undefined && (isFirst || !first.breakLevel))) {
+    lines[lines.length - 1] = whole;
+  } else if (!isFirst && first.breakLevel) {
+    lines.push(continuation);
+    place(lines, pieces, true);
+  } else {
+    placeSegments(lines, segments ?? [], isFirst);
+  }
+}
+
+/** Segments side by side; after one that had to be broken itself the next begins a line. */
+function placeSegments(lines: string[], segments: readonly Piece[][], isFirst: boolean): void {
+  let wasBroken = false;
+  for (const [i, segment] of segments.entries()) {
+    if (wasBroken) lines.push(continuation);
+    const begun: number = lines.length;
+    place(lines, segment, wasBroken || (i === 0 && isFirst));
+    const movedDown: number = i > 0 && !wasBroken && lines.length > begun ? 1 : 0;
+    wasBroken = i > 0 && lines.length - begun > movedDown;
+  }
 }
 
 /** The pieces cut at their outermost breaks; nothing where they have none after the first. */

@@ -68,7 +68,7 @@ function findMistakes(
       result.push(piece);
       if (found.length > 0) suspect.add(piece);
     }
-    if (token.tokenType === OpenText) suspectLine(source, result, suspect);
+    if (token.tokenType === OpenText) passOverLine(source, result, diagnostics, suspect);
   }
   return result;
 }
@@ -81,12 +81,22 @@ function unglue(token: IToken): IToken[] {
   return [tokenAt(Whole, token.startOffset, digits), tokenAt(type, token.startOffset + digits.length, word)];
 }
 
-/** A quotation mark too few may have turned the text of the whole line inside out. */
-function suspectLine(source: Source, tokens: readonly IToken[], suspect: Set<IToken>): void {
-  for (const token of tokens.toReversed()) {
+/** A quotation mark too few may have turned the text of the whole line inside out: only the last mistake of it counts. */
+function passOverLine(
+  source: Source,
+  tokens: readonly IToken[],
+  diagnostics: Diagnostic[],
+  suspect: Set<IToken>,
+): void {
+  let lineStart = 0;
+  for (let i = tokens.length - 1; i >= 0; i--) {
+    const token = tokens[i];
+    if (!token) break;
     suspect.add(token);
-    if (startsLine(source, token)) return;
+    lineStart = token.startOffset;
+    if (startsLine(source, token)) break;
   }
+  while ((diagnostics.at(-2)?.span.start ?? -1) >= lineStart) diagnostics.splice(-2, 1);
 }
 
 /** Tokens with the stretches the lexer could not read: letters become (part of) a name, anything else is left out. */

@@ -123,7 +123,7 @@ function putZones(out: Pieces, { name, letters, cuts }: Of<"zones">): void {
     if (!cut) continue;
     out.push({ text: cut.below, at: cut.span.start, breakLevel: 1 });
     putExpression(out, cut.expression);
-    out.push({ text: cut.above });
+    out.push({ text: cut.above, at: cut.span.end - cut.above.length });
   }
 }
 

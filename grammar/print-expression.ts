@@ -85,7 +85,7 @@ function putBinary(out: Pieces, expression: Expression & { kind: "binary" }, sty
   const close = level === 2 && !style.open;
   const inChain = binding(left) === level;
   putOperand(out, left, level, inChain ? style : { tight });
-  const breakLevel = level === 1 ? style.breakLevel : undefined;
+  const breakLevel = close ? undefined : style.breakLevel;
   out.push({ text: operator, tight: close, ...(breakLevel !== undefined && { breakLevel }) });
   putOperand(out, right, level + 1, { tight: close });
 }

@@ -72,6 +72,8 @@ function* candidates(tokens: readonly IToken[], failure: Failure): Generator<Rep
     for (const type of separators) yield replaced("replace", tokens, index, type);
   const otherWord = otherWords[found?.image ?? ""];
   if (otherWord && types.includes(otherWord)) yield replaced("replace", tokens, index, otherWord);
+  const twoNames = found?.tokenType === Name && tokens[index + 1]?.tokenType === Name;
+  if (twoNames && types.includes(placed.when)) yield replaced("replace", tokens, index, placed.when);
   for (const type of separators) yield inserted(tokens, index, type);
   if (failure.expected.some(({ rule }) => rule === "operands"))
     yield inserted(tokens, index, signs.openParen);

@@ -40,6 +40,7 @@ const likelyMistakes: readonly ((place: Place) => Complaint | undefined)[] = [
   bracketOpen,
   bracketUnopened,
   countAfterItem,
+  commaBetween,
   repeatSign,
   countWithPoint,
   textWithoutQuotes,
@@ -204,6 +205,15 @@ function countAfterItem(place: Place): Complaint | undefined {
   };
 }
 
+/** `high, low` in a pattern or the trials of an expectation. */
+function commaBetween(place: Place): Complaint | undefined {
+  if (at(place)?.tokenType !== signs.comma) return undefined;
+  const asked = place.failure.expected.find(({ rule }) => rule === "item" || rule === "trial");
+  if (!asked) return undefined;
+  const what = asked.rule === "item" ? "the items of a pattern" : "trials";
+  return { message: `${what} stand side by side, without commas`, hint: "leave it out" };
+}
+
 /** `high*`, `high+`, `high?`, `high{2}` in a pattern. */
 function repeatSign(place: Place): Complaint | undefined {
   const token = at(place);
@@ -274,6 +284,8 @@ const forms: readonly { readonly type: TokenType; readonly rule: string; readonl
   { type: placed.by, rule: "sweep", hint: "a parameter goes in steps, as in `delta from 0 to 3 by 0.25`" },
   { type: reserved.within, rule: "require", hint: "an equality has a tolerance, as in `= 370 within 5%`" },
   { type: reserved.within, rule: "link", hint: "write how many trials B has, as in `A unless B within 5`" },
+  { type: placed.before, rule: "clear", hint: "write `clear before SET` or `clear after CONDITION`" },
+  { type: placed.until, rule: "quiet", hint: "write `quiet for 20` or `quiet until CONDITION`" },
   { type: placed.refuse, rule: "missing", hint: "write `refuse`, `skip` or `break`, or `STAT: as LETTER`" },
 ];
 

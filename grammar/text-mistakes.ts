@@ -54,7 +54,11 @@ function badNumber(span: Span, image: string): Diagnostic {
     return diagnose("bad_number", span, `${quote(image)} lacks a digit after the point`, {
       hint: `write ${quote(image.slice(0, -1))} or ${quote(`${image}0`)}`,
     });
-  const glued = /^(\d+(?:\.\d+)?)([A-Za-z_]\w*)$/.exec(image);
+  if (/^\d[\d_]*(?:\.\d[\d_]*)?$/.test(image))
+    return diagnose("bad_number", span, `${quote(image)} is not a number`, {
+      hint: `write ${quote(image.replaceAll("_", ""))}`,
+    });
+  const glued = /^(\d+(?:\.\d+)?)(?!x[\dA-Fa-f]+$)([A-Za-z]\w*)$/.exec(image);
   if (glued)
     return diagnose("bad_number", span, `a letter stands straight after the number in ${quote(image)}`, {
       hint: `put a space between them: ${quote(`${glued[1]} ${glued[2]}`)}`,

@@ -196,6 +196,9 @@ export const lookalikes: readonly Lookalike[] = [
   lookalike("\u2013", "-", signs.minus),
   lookalike("\u00D7", "*", signs.times),
   lookalike("\u00B7", "*", signs.times),
+  lookalike("\u00AC", "not", reserved.not),
+  lookalike("\u2227", "and", reserved.and),
+  lookalike("\u2228", "or", reserved.or),
 ];
 
 /** A comment that begins with `//`, as in other languages; the parser never sees it. */

@@ -12,8 +12,14 @@ import { processAt } from "../check/process-at.ts";
 import type { AttributedMachine, Machine } from "../machine/automaton.ts";
 import { buildAttributedMachine } from "../machine/build.ts";
 import type { LetterModel, Policy, ProcessUse, Quantity } from "../policy.ts";
-import type { DoubleDoubles } from "./double-double.ts";
-import { prepareRunLengths, type RunLengthSolver, type RunLengths, type StateLaw } from "./run-lengths.ts";
+import { exactColumns, exactLetters } from "./exact-columns.ts";
+import {
+  type ColumnProbabilities,
+  prepareRunLengths,
+  type RunLengthSolver,
+  type RunLengths,
+  type StateLaw,
+} from "./run-lengths.ts";
 
 /** A signal by its index, or any of them. */
 export type SignalChoice = number | "any";
@@ -21,8 +27,8 @@ export type SignalChoice = number | "any";
 /** A process at one value of each of its parameters. */
 export type Point = { readonly process: number; readonly values: readonly Quantity[] };
 
-/** The letters' probabilities at a point: by alphabet, then by letter. */
-export type Letters = readonly DoubleDoubles[];
+/** The letters' probabilities at a point: by alphabet, then by letter; exactly too where the model states them so. */
+export type Letters = readonly ColumnProbabilities[];
 
 export type Assessor = {
   readonly policy: Policy;
@@ -30,7 +36,7 @@ export type Assessor = {
   /** The letters' probabilities at a point, or why there are none; `span` is where the question stands. */
   readonly lettersAt: (point: Point, span: Span) => Outcome<Letters>;
   /** By column of the given `columnOf`. */
-  readonly columnsAt: (letters: Letters, columnOf: Int32Array, columns: number) => DoubleDoubles;
+  readonly columnsAt: (letters: Letters, columnOf: Int32Array, columns: number) => ColumnProbabilities;
   readonly solverOf: (signal: SignalChoice) => RunLengthSolver;
   /** The run lengths of a signal at a point, from the start or from a law over the states. */
   readonly runLengthsAt: (signal: SignalChoice, letters: Letters, start?: StateLaw) => RunLengths;
@@ -57,7 +63,7 @@ export function pointsOf(policy: Policy, use: ProcessUse): Point[] {
 export function makeAssessor(policy: Policy, machine: Machine, mostStates: number): Assessor {
   const solvers = new Map<SignalChoice, RunLengthSolver>();
   const letters = new Map<string, Outcome<Letters>>();
-  const columns = new WeakMap<Letters, Map<Int32Array, DoubleDoubles>>();
+  const columns = new WeakMap<Letters, Map<Int32Array, ColumnProbabilities>>();
   const lengths = new WeakMap<Letters, Map<SignalChoice, RunLengths>>();
   let attributed: AttributedMachine | null | undefined;
 
@@ -65,9 +71,16 @@ export function makeAssessor(policy: Policy, machine: Machine, mostStates: numbe
     kept(solvers, signal, () => prepareRunLengths(machine, raises(signal)));
   const columnsAt = (at: Letters, columnOf: Int32Array, count: number) =>
     kept(
-      kept(columns, at, () => new Map<Int32Array, DoubleDoubles>()),
+      kept(columns, at, () => new Map<Int32Array, ColumnProbabilities>()),
       columnOf,
-      () => columnProbabilities(policy.alphabets, columnOf, count, at),
+      () => ({
+        ...columnProbabilities(policy.alphabets, columnOf, count, at),
+        exact: exactColumns(
+          at.map((law) => law.exact ?? null),
+          columnOf,
+          count,
+        ),
+      }),
     );
   return {
     policy,
@@ -112,10 +125,11 @@ function findLetters(policy: Policy, point: Point, span: Span): Outcome<Letters>
   if (!process) return { diagnostics: [] };
   const { value: models, diagnostics } = processAt(policy, process, point.values);
   if (!models) return { diagnostics };
-  const letters: DoubleDoubles[] = [];
+  const letters: ColumnProbabilities[] = [];
   const refused: Diagnostic[] = [];
   policy.alphabets.forEach((alphabet, index) => {
-    const found = letterProbabilities(alphabet, models[index] ?? indifferent(alphabet.letters.length));
+    const model = models[index] ?? indifferent(alphabet.letters.length);
+    const found = letterProbabilities(alphabet, model);
     if ("unbuilt" in found)
       refused.push(
         diagnose(
@@ -128,7 +142,7 @@ function findLetters(policy: Policy, point: Point, span: Span): Outcome<Letters>
           },
         ),
       );
-    else letters.push(found);
+    else letters.push({ ...found, exact: exactLetters(model) });
   });
   return refused.length > 0 ? { diagnostics: refused } : { value: letters, diagnostics: [] };
 }

@@ -43,7 +43,6 @@ export type Shape = {
   readonly sets: ColumnSets;
   /** The largest number of moves from one place. */
   readonly widestRow: number;
-  readonly absorbing: boolean;
 };
 
 export type Chain = {
@@ -63,13 +62,12 @@ export type Chain = {
 export type Marks = Uint8Array;
 
 /** How many steps of a walk choose the anchor of a class. */
-const ANCHOR_STEPS = 24;
+const ANCHOR_STEPS = 16;
 
-/** The marks of the transitions whose output satisfies the predicate. */
-export function markTransitions(automaton: Automaton, isMarked: (output: number) => boolean): Marks {
-  const { output } = automaton;
+/** The marks of the transitions that give something out. */
+export function markTransitions({ output }: Automaton): Marks {
   const marks = new Uint8Array(output.length);
-  for (let i = 0; i < output.length; i++) if (output[i] !== 0 && isMarked(output[i]!)) marks[i] = 1;
+  for (let i = 0; i < output.length; i++) if (output[i] !== 0) marks[i] = 1;
   return marks;
 }
 
@@ -81,28 +79,34 @@ export function usableColumns(probabilities: DoubleDoubles): Int32Array {
   return Int32Array.from(usable);
 }
 
-/**
- * The shape of the chain from `starts` (states) along `usable` columns. `weights`, by column, decide which members become
- * anchors: any positive numbers do, good ones make short cycles.
- */
-export function shapeChain(
+/** What a chain's shape depends on before its anchors are chosen. */
+export type Skeleton = { readonly moves: Moves; readonly marks: Marks; readonly classes: Classes };
+
+/** The skeleton of the chain from `starts` (states) along `usable` columns; `absorbing` says whether marked transitions end it. */
+export function findSkeleton(
   automaton: Automaton,
   marks: Marks,
   absorbing: boolean,
   starts: Int32Array,
   usable: Int32Array,
-  weights: Float64Array,
-): Shape {
+): Skeleton {
   const { states, columns, next } = automaton;
   if (marks.length !== states * columns) throw new InternalError("marks do not fit the automaton");
-  const skip = absorbing ? marks : new Uint8Array(marks.length);
-  const moves: Moves = { states, columns, next, skip, usable };
-  const classes = findClasses(moves, starts);
-  const anchors = findAnchors(moves, classes, weights, ANCHOR_STEPS);
+  const moves = { states, columns, next, skip: absorbing ? marks : new Uint8Array(marks.length), usable };
+  return { moves, marks, classes: findClasses(moves, starts) };
+}
+
+/** By class, a state that a walk with the given chances of columns meets often: good anchors make short cycles. */
+export function chooseAnchors({ moves, classes }: Skeleton, weights: Float64Array): Int32Array {
+  return findAnchors(moves, classes, weights, ANCHOR_STEPS);
+}
+
+/** The shape of the chain with the given anchors. */
+export function shapeChain({ moves, marks, classes }: Skeleton, anchors: Int32Array): Shape {
   const stateOf = placeStates(moves, classes, anchors);
-  const placeOf = new Int32Array(states).fill(-1);
+  const placeOf = new Int32Array(moves.states).fill(-1);
   for (let place = 0; place < stateOf.length; place++) placeOf[stateOf[place]!] = place;
-  const numbering = numberSets(columns);
+  const numbering = numberSets(moves.columns);
   const rows = writeRows(moves, marks, classes, stateOf, placeOf, numbering);
   return {
     size: stateOf.length,
@@ -112,17 +116,18 @@ export function shapeChain(
     classStart: classes.memberStart,
     ...rows,
     sets: numbering.finish(),
-    absorbing,
   };
 }
 
 /** The states in the order of their places. */
 function placeStates(moves: Moves, classes: Classes, anchors: Int32Array): Int32Array {
-  const stateOf = new Int32Array(classes.members.length);
-  const seen = new Uint8Array(moves.states);
+  const stateOf = classes.members.slice();
   const position = new Int32Array(moves.states);
-  const path = new Int32Array(classes.members.length);
-  for (let k = 0; k < classes.count; k++)
+  const path = new Int32Array(stateOf.length);
+  const seen = new Uint8Array(moves.states);
+  for (let k = 0; k < classes.count; k++) {
+    // The members come in postorder from the entry.
+    if (anchors[k] === classes.entry[k]) continue;
     writePostorder(
       moves,
       classes.classOf,
@@ -133,24 +138,24 @@ function placeStates(moves: Moves, classes: Classes, anchors: Int32Array): Int32
       position,
       path,
     );
+  }
   return stateOf;
 }
 
-type Rows = Pick<
-  Shape,
-  | "rowStart"
-  | "rowAnchor"
-  | "rowLeave"
-  | "target"
-  | "moveSet"
-  | "loopSet"
-  | "markSet"
-  | "outSet"
-  | "exitSet"
-  | "widestRow"
->;
+type Rows = Omit<Shape, "size" | "stateOf" | "placeOf" | "classCount" | "classStart" | "sets">;
 
-/** The rows of all places: moves merged and sorted into the three segments, and the four sums by place. */
+/** Rows under construction: the arrays of a shape, with room to spare. */
+type Draft = { -readonly [K in keyof Rows]: Rows[K] } & {
+  readonly moves: Moves;
+  readonly marks: Marks;
+  readonly placeOf: Int32Array;
+  readonly extend: SetNumbering["extend"];
+  /** By place: where the current row holds its move there; older entries lie before the row and do not count. */
+  readonly slot: Int32Array;
+  count: number;
+};
+
+/** The rows of all places: moves merged and sorted into the three segments, and the four sets by place. */
 function writeRows(
   moves: Moves,
   marks: Marks,
@@ -160,94 +165,112 @@ function writeRows(
   numbering: SetNumbering,
 ): Rows {
   const size = stateOf.length;
-  const { columns, next, skip, usable } = moves;
-  const [rowStart, rowAnchor, rowLeave] = [0, 1, 1].map((extra) => new Int32Array(size + 1 - extra)) as [
-    Int32Array,
-    Int32Array,
-    Int32Array,
-  ];
-  const capacity = size * usable.length;
-  const target = new Int32Array(capacity);
-  const moveSet = new Int32Array(capacity);
-  const loopSet = new Int32Array(size);
-  const markSet = new Int32Array(size);
-  const outSet = new Int32Array(size);
-  const exitSet = new Int32Array(size);
-  // By place: where the current row holds its move there; older entries lie before the row and do not count.
-  const slot = new Int32Array(size).fill(-1);
-  let count = 0;
-  let widestRow = 0;
-  for (let place = 0; place < size; place++) {
-    const state = stateOf[place]!;
-    const own = classes.classOf[state]!;
-    const first = classes.memberStart[own]!;
-    rowStart[place] = count;
-    for (const column of usable) {
-      const transition = state * columns + column;
-      if (marks[transition] === 1) markSet[place] = numbering.extend(markSet[place]!, column);
-      if (skip[transition] === 1) {
-        outSet[place] = numbering.extend(outSet[place]!, column);
-        exitSet[place] = numbering.extend(exitSet[place]!, column);
-        continue;
-      }
-      const to = placeOf[next[transition]!]!;
-      if (to === place) {
-        loopSet[place] = numbering.extend(loopSet[place]!, column);
-        continue;
-      }
-      outSet[place] = numbering.extend(outSet[place]!, column);
-      if (to < first) exitSet[place] = numbering.extend(exitSet[place]!, column);
-      let at = slot[to]!;
-      if (at < rowStart[place]!) {
-        at = count++;
-        slot[to] = at;
-        target[at] = to;
-        moveSet[at] = 0;
-      }
-      moveSet[at] = numbering.extend(moveSet[at]!, column);
-    }
-    const anchor = classes.memberStart[own + 1]! - 1;
-    const leave = partition(target, moveSet, rowStart[place]!, count, (to) => to >= first);
-    rowLeave[place] = leave;
-    rowAnchor[place] = partition(target, moveSet, rowStart[place]!, leave, (to) => to !== anchor);
-    widestRow = Math.max(widestRow, count - rowStart[place]!);
-  }
-  rowStart[size] = count;
-  return {
-    rowStart,
-    rowAnchor,
-    rowLeave,
-    target: target.slice(0, count),
-    moveSet: moveSet.slice(0, count),
-    loopSet,
-    markSet,
-    outSet,
-    exitSet,
-    widestRow,
+  const capacity = size * moves.usable.length;
+  const byPlace = (): Int32Array => new Int32Array(size);
+  const draft: Draft = {
+    moves,
+    marks,
+    placeOf,
+    extend: numbering.extend,
+    slot: byPlace().fill(-1),
+    count: 0,
+    rowStart: new Int32Array(size + 1),
+    rowAnchor: byPlace(),
+    rowLeave: byPlace(),
+    target: new Int32Array(capacity),
+    moveSet: new Int32Array(capacity),
+    loopSet: byPlace(),
+    markSet: byPlace(),
+    outSet: byPlace(),
+    exitSet: byPlace(),
+    widestRow: 0,
   };
+  for (let k = 0; k < classes.count; k++) {
+    const first = classes.memberStart[k]!;
+    const end = classes.memberStart[k + 1]!;
+    for (let place = first; place < end; place++) {
+      writeRow(draft, place, stateOf[place]!, first);
+      sortRow(draft, place, first, end - 1);
+    }
+  }
+  const {
+    slot: _slot,
+    count,
+    moves: _moves,
+    marks: _marks,
+    placeOf: _places,
+    extend: _extend,
+    ...rows
+  } = draft;
+  return { ...rows, target: rows.target.slice(0, count), moveSet: rows.moveSet.slice(0, count) };
 }
 
-/** Brings the moves whose target satisfies the predicate to the front of the row; where the others begin. */
-function partition(
-  target: Int32Array,
-  moveSet: Int32Array,
-  from: number,
-  to: number,
-  isFirst: (place: number) => boolean,
-): number {
-  let end = from;
-  for (let i = from; i < to; i++) {
-    const place = target[i]!;
-    if (!isFirst(place)) continue;
-    const set = moveSet[i]!;
-    for (let j = i; j > end; j--) {
+/** The moves and sets of one place; `first` is the first place of its class. */
+function writeRow(draft: Draft, place: number, state: number, first: number): void {
+  const { moves, marks, placeOf, extend, slot, target, moveSet } = draft;
+  const { columns, next, skip, usable } = moves;
+  const begin = draft.count;
+  let [loop, mark, out, exit] = [0, 0, 0, 0];
+  let count = begin;
+  for (const column of usable) {
+    const transition = state * columns + column;
+    if (marks[transition] === 1) mark = extend(mark, column);
+    if (skip[transition] === 1) {
+      out = extend(out, column);
+      exit = extend(exit, column);
+      continue;
+    }
+    const to = placeOf[next[transition]!]!;
+    if (to === place) {
+      loop = extend(loop, column);
+      continue;
+    }
+    out = extend(out, column);
+    if (to < first) exit = extend(exit, column);
+    let at = slot[to]!;
+    if (at < begin) {
+      at = count++;
+      slot[to] = at;
+      target[at] = to;
+      moveSet[at] = 0;
+    }
+    moveSet[at] = extend(moveSet[at]!, column);
+  }
+  draft.loopSet[place] = loop;
+  draft.markSet[place] = mark;
+  draft.outSet[place] = out;
+  draft.exitSet[place] = exit;
+  draft.rowStart[place] = begin;
+  draft.rowStart[place + 1] = count;
+  draft.count = count;
+  draft.widestRow = Math.max(draft.widestRow, count - begin);
+}
+
+/** Sorts the moves of a row into those within the class, that to the anchor, those to earlier classes; stable. */
+function sortRow(
+  { rowStart, rowAnchor, rowLeave, target, moveSet }: Draft,
+  place: number,
+  first: number,
+  anchor: number,
+): void {
+  const begin = rowStart[place]!;
+  let [within, toAnchor] = [begin, begin];
+  for (let m = begin, end = rowStart[place + 1]!; m < end; m++) {
+    const to = target[m]!;
+    if (to < first) continue;
+    const at = to === anchor ? toAnchor : within;
+    const set = moveSet[m]!;
+    for (let j = m; j > at; j--) {
       target[j] = target[j - 1]!;
       moveSet[j] = moveSet[j - 1]!;
     }
-    target[end] = place;
-    moveSet[end++] = set;
+    target[at] = to;
+    moveSet[at] = set;
+    toAnchor++;
+    if (to !== anchor) within++;
   }
-  return end;
+  rowAnchor[place] = within;
+  rowLeave[place] = toAnchor;
 }
 
 /** The chain of a shape under given probabilities by column, exactly the shape's usable columns being positive. */

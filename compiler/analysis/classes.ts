@@ -22,7 +22,10 @@ export type Classes = {
   readonly count: number;
   /** By state; -1 where none of the starts leads. */
   readonly classOf: Int32Array;
-  /** The states reached, class by class; those of class k stand at memberStart[k] to memberStart[k + 1]. */
+  /**
+   * The states reached, class by class; those of class k stand at memberStart[k] to memberStart[k + 1], in depth-first postorder
+   * from the class's entry, which is the last.
+   */
   readonly members: Int32Array;
   readonly memberStart: Int32Array;
   /** By class: the member that was reached first. */
@@ -41,11 +44,11 @@ export function findClasses(moves: Moves, starts: Int32Array): Classes {
   const position = new Int32Array(states);
   const path = new Int32Array(states);
   const open = new Int32Array(states);
-  const members = new Int32Array(states);
+  const finished = new Int32Array(states);
   const memberStart: number[] = [0];
   const entry: number[] = [];
   const { columns, next, skip, usable } = moves;
-  let [visited, openCount, memberCount] = [0, 0, 0];
+  let [visited, openCount, memberCount, finishedCount] = [0, 0, 0, 0];
   for (const start of starts) {
     if (order[start]! >= 0) continue;
     let depth = 0;
@@ -69,13 +72,14 @@ export function findClasses(moves: Moves, starts: Int32Array): Classes {
         if (classOf[target]! < 0 && order[target]! < low[state]!) low[state] = order[target]!;
       }
       if (descended) continue;
+      finished[finishedCount++] = state;
       depth--;
       if (depth >= 0 && low[state]! < low[path[depth]!]!) low[path[depth]!] = low[state]!;
       if (low[state] !== order[state]) continue;
       for (let member = -1; member !== state; ) {
         member = open[--openCount]!;
         classOf[member] = entry.length;
-        members[memberCount++] = member;
+        memberCount++;
       }
       entry.push(state);
       memberStart.push(memberCount);
@@ -84,10 +88,18 @@ export function findClasses(moves: Moves, starts: Int32Array): Classes {
   return {
     count: entry.length,
     classOf,
-    members: members.subarray(0, memberCount),
-    memberStart: Int32Array.from(memberStart),
-    entry: Int32Array.from(entry),
+    members: sortByClass(finished.subarray(0, finishedCount), classOf, memberStart),
+    memberStart: new Int32Array(memberStart),
+    entry: new Int32Array(entry),
   };
+}
+
+/** The states class by class, within each in the order given. */
+function sortByClass(states: Int32Array, classOf: Int32Array, memberStart: readonly number[]): Int32Array {
+  const cursor = new Int32Array(memberStart);
+  const sorted = new Int32Array(states.length);
+  for (const state of states) sorted[cursor[classOf[state]!]!++] = state;
+  return sorted;
 }
 
 /**
@@ -134,7 +146,7 @@ export function writePostorder(
  * state. `weight` is by column. A member met often makes short cycles.
  */
 export function findAnchors(moves: Moves, classes: Classes, weight: Float64Array, steps: number): Int32Array {
-  const anchors = Int32Array.from(classes.entry);
+  const anchors = classes.entry.slice();
   const mass = new Float64Array(moves.states);
   const coming = new Float64Array(moves.states);
   const visits = new Float64Array(moves.states);

@@ -44,8 +44,8 @@ export function numberSets(columns: number): SetNumbering {
   };
   const finish = (): ColumnSets => ({
     count: parent.length,
-    parent: Int32Array.from(parent),
-    column: Int32Array.from(column),
+    parent: new Int32Array(parent),
+    column: new Int32Array(column),
   });
   return { extend, finish };
 }

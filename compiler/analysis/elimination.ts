@@ -16,8 +16,8 @@ export type Program = {
   /** Places in the class. */
   readonly size: number;
   readonly slots: number;
-  /** By move within the class (those to the anchor included), in the order of the rows: its slot. */
-  readonly slotOfMove: Int32Array;
+  /** Moves within the class, those to the anchor included; in the order of the rows they have the slots from 1 on. */
+  readonly moves: number;
   /** The places in the order of elimination; all but the anchor. */
   readonly order: Int32Array;
   /** Step s: the moves out of the place eliminated, from outStart[s] to outStart[s + 1]. */
@@ -42,103 +42,143 @@ export type Factors = {
 
 /** Larger classes are left to the iteration: the table of slots is dense. */
 export const MOST_PLACES = 2200;
-/** Multiplications a run may take. */
-const MOST_PRODUCTS = 2_500_000;
+/** Products a run may take for each move of the class, and in any case; beyond, sweeps are cheaper. */
+const MOST_PRODUCTS_A_MOVE = 25;
+const ALWAYS_ALLOWED = 30_000;
 
-type Slots = { readonly table: Int32Array; count: number };
+/** A class under symbolic elimination. */
+type Draft = {
+  readonly size: number;
+  /** By place: the places its moves lead to, and those whose moves lead to it. */
+  readonly outs: number[][];
+  readonly ins: number[][];
+  /** By place * size + place: the slot of the move; 0 where there is none. */
+  readonly table: Int32Array;
+  /** Slots given; slot 0 takes what is of no use. */
+  slots: number;
+  readonly order: number[];
+  readonly outStart: number[];
+  readonly outSlot: number[];
+  readonly outPlace: number[];
+  readonly inStart: number[];
+  readonly inSlot: number[];
+  readonly inPlace: number[];
+  readonly fill: Int32Array;
+  products: number;
+};
 
-/** The program of a class, or null where elimination would cost too much. */
-export function compileElimination(shape: Shape, k: number): Program | null {
+/** The program of a class, or null where elimination would cost too much: more than `mostProducts`, or than sweeps would. */
+export function compileElimination(shape: Shape, k: number, mostProducts?: number): Program | null {
   const first = shape.classStart[k]!;
   const size = shape.classStart[k + 1]! - first;
   if (size > MOST_PLACES) return null;
-  const outs: number[][] = Array.from({ length: size }, () => []);
-  const ins: number[][] = Array.from({ length: size }, () => []);
-  const slots: Slots = { table: new Int32Array(size * size).fill(-1), count: 0 };
-  const slotOfMove: number[] = [];
-  for (let i = 0; i < size; i++) {
-    for (let m = shape.rowStart[first + i]!; m < shape.rowLeave[first + i]!; m++) {
-      const j = shape.target[m]! - first;
-      slotOfMove.push(slots.count);
-      slots.table[i * size + j] = slots.count++;
-      outs[i]!.push(j);
-      ins[j]!.push(i);
-    }
-  }
-  return eliminate(size, outs, ins, slots, Int32Array.from(slotOfMove));
-}
-
-function eliminate(
-  size: number,
-  outs: number[][],
-  ins: number[][],
-  slots: Slots,
-  slotOfMove: Int32Array,
-): Program | null {
-  const order = new Int32Array(size - 1);
-  const gone = new Uint8Array(size);
-  const outStart: number[] = [0];
-  const inStart: number[] = [0];
-  const [outSlot, outPlace, inSlot, inPlace, fill]: number[][] = [[], [], [], [], []];
-  const remaining = (places: number[]): number[] => places.filter((place) => gone[place] === 0);
-  const degree = new Float64Array(size);
-  for (let i = 0; i < size; i++) degree[i] = outs[i]!.length * ins[i]!.length;
-  for (let step = 0; step < size - 1; step++) {
-    let pivot = -1;
-    for (let i = 0; i < size - 1; i++)
-      if (gone[i] === 0 && (pivot < 0 || degree[i]! < degree[pivot]!)) pivot = i;
-    if (fill!.length + degree[pivot]! > MOST_PRODUCTS) return null;
-    order[step] = pivot;
-    gone[pivot] = 1;
-    for (const j of outs[pivot]!) {
-      outSlot!.push(slots.table[pivot * size + j]!);
-      outPlace!.push(j);
-    }
-    for (const i of ins[pivot]!) {
-      inSlot!.push(slots.table[i * size + pivot]!);
-      inPlace!.push(i);
-      outs[i] = remaining(outs[i]!);
-      for (const j of outs[pivot]!) fill!.push(i === j ? -1 : slotFor(slots, size, i, j, outs, ins));
-    }
-    for (const j of outs[pivot]!) {
-      ins[j] = remaining(ins[j]!);
-      degree[j] = outs[j]!.length * ins[j]!.length;
-    }
-    for (const i of ins[pivot]!) degree[i] = outs[i]!.length * ins[i]!.length;
-    outStart.push(outSlot!.length);
-    inStart.push(inSlot!.length);
-  }
+  let moves = 0;
+  for (let i = first; i < first + size; i++) moves += shape.rowLeave[i]! - shape.rowStart[i]!;
+  const most = mostProducts ?? Math.max(ALWAYS_ALLOWED, MOST_PRODUCTS_A_MOVE * moves);
+  const draft = beginDraft(size, most);
+  for (let i = 0; i < size; i++)
+    for (let m = shape.rowStart[first + i]!; m < shape.rowLeave[first + i]!; m++)
+      makeSlot(draft, i, shape.target[m]! - first);
+  if (!eliminateAll(draft, most)) return null;
   return {
     size,
-    slots: slots.count + 1,
-    slotOfMove,
-    order,
-    outStart: Int32Array.from(outStart),
-    outSlot: Int32Array.from(outSlot!),
-    outPlace: Int32Array.from(outPlace!),
-    inStart: Int32Array.from(inStart),
-    inSlot: Int32Array.from(inSlot!),
-    inPlace: Int32Array.from(inPlace!),
-    // What would fall on a loop is of no use: it goes to the slot after the last.
-    fill: Int32Array.from(fill!, (slot) => (slot < 0 ? slots.count : slot)),
+    slots: draft.slots + 1,
+    moves,
+    order: new Int32Array(draft.order),
+    outStart: new Int32Array(draft.outStart),
+    outSlot: new Int32Array(draft.outSlot),
+    outPlace: new Int32Array(draft.outPlace),
+    inStart: new Int32Array(draft.inStart),
+    inSlot: new Int32Array(draft.inSlot),
+    inPlace: new Int32Array(draft.inPlace),
+    fill: draft.fill.slice(0, draft.products),
   };
 }
 
-/** The slot of the move from i to j, made where there is none. */
-function slotFor(
-  slots: Slots,
-  size: number,
-  i: number,
-  j: number,
-  outs: number[][],
-  ins: number[][],
-): number {
-  const known = slots.table[i * size + j]!;
-  if (known >= 0) return known;
-  slots.table[i * size + j] = slots.count;
-  outs[i]!.push(j);
-  ins[j]!.push(i);
-  return slots.count++;
+function beginDraft(size: number, most: number): Draft {
+  const lists = (): number[][] => Array.from({ length: size }, () => []);
+  return {
+    size,
+    outs: lists(),
+    ins: lists(),
+    table: new Int32Array(size * size),
+    slots: 0,
+    order: [],
+    outStart: [0],
+    outSlot: [],
+    outPlace: [],
+    inStart: [0],
+    inSlot: [],
+    inPlace: [],
+    fill: new Int32Array(most),
+    products: 0,
+  };
+}
+
+/** A new move from i to j; its slot. */
+function makeSlot(draft: Draft, i: number, j: number): number {
+  draft.outs[i]!.push(j);
+  draft.ins[j]!.push(i);
+  const slot = ++draft.slots;
+  draft.table[i * draft.size + j] = slot;
+  return slot;
+}
+
+/** Eliminates every place but the anchor; false as soon as it is plain that it takes more than `most` products. */
+function eliminateAll(draft: Draft, most: number): boolean {
+  const { size, outs, ins } = draft;
+  const degree = new Float64Array(size);
+  const measure = (i: number): void => {
+    degree[i] = outs[i]!.length * ins[i]!.length;
+  };
+  for (let i = 0; i < size; i++) measure(i);
+  degree[size - 1] = Number.POSITIVE_INFINITY;
+  for (let step = 0; step < size - 1; step++) {
+    let pivot = 0;
+    for (let i = 1; i < size; i++) if (degree[i]! < degree[pivot]!) pivot = i;
+    // Every place left costs at least as much, until few are left.
+    const rest = Math.max(1, size - step - Math.sqrt(degree[pivot]!));
+    if (draft.products + rest * degree[pivot]! > most) return false;
+    eliminate(draft, pivot);
+    degree[pivot] = Number.POSITIVE_INFINITY;
+    for (const i of ins[pivot]!) if (i < size - 1) measure(i);
+    for (const j of outs[pivot]!) if (j < size - 1) measure(j);
+  }
+  return true;
+}
+
+/** Eliminates one place: takes it out of the lists, records the step, and makes slots for the moves that arise. */
+function eliminate(draft: Draft, pivot: number): void {
+  const { size, table, outSlot, outPlace, inSlot, inPlace, fill } = draft;
+  const outs = draft.outs[pivot]!;
+  const ins = draft.ins[pivot]!;
+  draft.order.push(pivot);
+  for (const j of outs) {
+    outSlot.push(table[pivot * size + j]!);
+    outPlace.push(j);
+    remove(draft.ins[j]!, pivot);
+  }
+  let products = draft.products;
+  for (const i of ins) {
+    inSlot.push(table[i * size + pivot]!);
+    inPlace.push(i);
+    remove(draft.outs[i]!, pivot);
+    const row = i * size;
+    for (let o = 0; o < outs.length; o++) {
+      const j = outs[o]!;
+      const slot = i === j ? 0 : table[row + j]!;
+      fill[products++] = slot === 0 && i !== j ? makeSlot(draft, i, j) : slot;
+    }
+  }
+  draft.products = products;
+  draft.outStart.push(outSlot.length);
+  draft.inStart.push(inSlot.length);
+}
+
+/** Takes a place out of a list; the last takes its place. */
+function remove(places: number[], place: number): void {
+  const last = places.pop()!;
+  if (last !== place) places[places.indexOf(place)] = last;
 }
 
 /** The factors of class k under the chain's probabilities. */
@@ -149,9 +189,9 @@ export function factorClass(program: Program, chain: Chain, k: number): Factors 
   const slot = new Float64Array(program.slots);
   const pivot = new Float64Array(size - 1);
   const exit = chain.exit.slice(first, first + size);
-  let move = 0;
+  let next = 1;
   for (let i = first; i < first + size; i++)
-    for (let m = rowStart[i]!; m < rowLeave[i]!; m++) slot[program.slotOfMove[move++]!] = chain.move[m]!;
+    for (let m = rowStart[i]!; m < rowLeave[i]!; m++) slot[next++] = chain.move[m]!;
   let at = 0;
   for (let step = 0; step < size - 1; step++) {
     const place = order[step]!;

@@ -9,7 +9,7 @@
  */
 import Fraction from "fraction.js";
 import type { Shape } from "./chain.ts";
-import type { Program } from "./elimination.ts";
+import { compileElimination, type Program } from "./elimination.ts";
 import { weighSets, wholeWeights } from "./exact-law.ts";
 import type { Plan } from "./solver.ts";
 
@@ -17,6 +17,7 @@ import type { Plan } from "./solver.ts";
 const MOST_BITS = 100_000;
 /** Multiplications over all primes. */
 const MOST_WORK = 3e9;
+const MOST_PRODUCTS = 2_500_000;
 const FIRST_PRIME = 33_554_393;
 
 /** The exact mean from `place`, or null. `infinite` marks the places whose mean is infinite. */
@@ -50,7 +51,8 @@ function programsOf({ shape, programOf }: Plan): (Program | null)[] | null {
     const first = shape.classStart[k]!;
     const end = shape.classStart[k + 1]!;
     if (!shape.exitSet.subarray(first, end).some((set) => set !== 0)) return null;
-    const program = end - first === 1 ? null : programOf(k);
+    // What is too much for one run of many may do for an exact one.
+    const program = end - first === 1 ? null : (programOf(k) ?? compileElimination(shape, k, MOST_PRODUCTS));
     if (end - first > 1 && !program) return null;
     programs.push(program);
   }
@@ -105,10 +107,9 @@ function classModulo(
     return gain[0]!;
   }
   const slot = new Float64Array(program.slots);
-  let move = 0;
+  let next = 1;
   for (let i = first; i < first + size; i++)
-    for (let m = rowStart[i]!; m < rowLeave[i]!; m++)
-      slot[program.slotOfMove[move++]!] = weight[moveSet[m]!]!;
+    for (let m = rowStart[i]!; m < rowLeave[i]!; m++) slot[next++] = weight[moveSet[m]!]!;
   return eliminateModulo(program, slot, cost, gain, values, first, prime);
 }
 

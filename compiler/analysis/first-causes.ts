@@ -8,7 +8,13 @@
 import type { AttributedMachine } from "../machine/automaton.ts";
 import { type ColumnProbabilities, prepareRunLengths, type RunLengthSolver } from "./run-lengths.ts";
 
-const solversOf = new WeakMap<AttributedMachine, Map<number | "any", RunLengthSolver>>();
+type Causes = {
+  readonly solver: RunLengthSolver;
+  /** By kind of raise less 1: the conditions it is attributed to. */
+  readonly kinds: readonly (readonly string[])[];
+};
+
+const causesOf = new WeakMap<AttributedMachine, Map<number | "any", Causes>>();
 
 /** By condition, the chance that the first raise of the signal (by index, or any) is attributed to it. */
 export function firstCauses(
@@ -16,25 +22,29 @@ export function firstCauses(
   signal: number | "any",
   probabilities: ColumnProbabilities,
 ): Record<string, number> {
-  const { attributions } = machine;
-  const isOurs = (cause: { readonly signal: number }): boolean => signal === "any" || cause.signal === signal;
-  const solvers = solversOf.get(machine) ?? new Map<number | "any", RunLengthSolver>();
-  solversOf.set(machine, solvers);
-  const solver =
-    solvers.get(signal) ??
-    prepareRunLengths(machine, (output) => attributions[output]?.some(isOurs) ?? false);
-  solvers.set(signal, solver);
+  const known = causesOf.get(machine) ?? new Map<number | "any", Causes>();
+  causesOf.set(machine, known);
+  const causes = known.get(signal) ?? prepareCauses(machine, signal);
+  known.set(signal, causes);
+  const { solver, kinds } = causes;
   const lengths = solver.under(probabilities);
-  const conditions = new Set(
-    attributions.flatMap((set) => set.filter(isOurs).map(({ condition }) => condition)),
-  );
+  const isAmong = (condition: string) => (kind: number) => kinds[kind - 1]!.includes(condition);
   return Object.fromEntries(
-    [...conditions].map((condition) => [
-      condition,
-      lengths.endsIn(
-        (output) =>
-          attributions[output]?.some((cause) => isOurs(cause) && cause.condition === condition) ?? false,
-      ),
-    ]),
+    [...new Set(kinds.flat())].map((condition) => [condition, lengths.endsIn(isAmong(condition))]),
   );
+}
+
+/** The raises of one signal, told apart by their causes only. */
+function prepareCauses({ attributions, ...automaton }: AttributedMachine, signal: number | "any"): Causes {
+  const kinds: string[][] = [];
+  const numbers = new Map<string, number>();
+  const kindBy = attributions.map((set) => {
+    const ours = set.filter((cause) => signal === "any" || cause.signal === signal);
+    const conditions = [...new Set(ours.map(({ condition }) => condition))];
+    if (conditions.length === 0) return 0;
+    const key = JSON.stringify(conditions);
+    if (!numbers.has(key)) numbers.set(key, kinds.push(conditions));
+    return numbers.get(key)!;
+  });
+  return { solver: prepareRunLengths(automaton, (output) => kindBy[output] ?? 0), kinds };
 }

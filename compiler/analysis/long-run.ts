@@ -12,11 +12,12 @@
  * Source: quasi-stationary laws, Darroch & Seneta (1965), J. Appl. Probab. 2:88.
  */
 import type { Automaton } from "../machine/automaton.ts";
-import { type Chain, fillChain, markTransitions, shapeChain, usableColumns } from "./chain.ts";
+import { type Chain, fillChain, findSkeleton, markTransitions, shapeChain, usableColumns } from "./chain.ts";
 import { type DoubleDoubles, UNIT } from "./double-double.ts";
 import { findPhases, type Phases } from "./period.ts";
 import type { StateLaw } from "./state-law.ts";
 import { stepBack, stepForth } from "./steps.ts";
+import { type KindOf, viewOf } from "./view.ts";
 
 /** Looks at moves that finding one limit may take, and steps. */
 const MOST_WORK = 1.5e9;
@@ -26,16 +27,19 @@ const SETTLED = 4e-15;
 /** A change this small that no longer shrinks is rounding. */
 const ROUNDING = 1e-12;
 
-/** The conditional long-run state from state 0 for runs that end at outputs satisfying `stops`, or why there is none. */
+/**
+ * The conditional long-run state from the start for runs that end at the first event `kindOf` makes of an output, or why there
+ * is none. States are those of `viewOf(automaton, kindOf)`.
+ */
 export function longRunLaw(
   automaton: Automaton,
-  stops: (output: number) => boolean,
+  kindOf: KindOf,
   probabilities: DoubleDoubles,
 ): { readonly law: StateLaw } | { readonly reason: string } {
-  const usable = usableColumns(probabilities);
-  const weights = new Float64Array(automaton.columns).fill(1 / usable.length);
-  const marks = markTransitions(automaton, stops);
-  const shape = shapeChain(automaton, marks, true, Int32Array.of(0), usable, weights);
+  const view = viewOf(automaton, kindOf);
+  const skeleton = findSkeleton(view, markTransitions(view), true, Int32Array.of(0), usableColumns(probabilities));
+  // No class is solved here: any anchors do.
+  const shape = shapeChain(skeleton, skeleton.classes.entry);
   const chain = fillChain(shape, probabilities);
   const start = shape.placeOf[0]!;
   const phases = findPhases(shape, Int32Array.of(start));

@@ -11,10 +11,11 @@
  */
 import type { Automaton } from "../machine/automaton.ts";
 import { certifyCycle } from "./certificate.ts";
-import { fillChain, markTransitions, type Shape, shapeChain, usableColumns } from "./chain.ts";
+import { fillChain, markTransitions } from "./chain.ts";
 import { type DoubleDoubles, UNIT } from "./double-double.ts";
 import { findPhases } from "./period.ts";
-import { type Plan, planShape, prepareSystem, type System } from "./solver.ts";
+import { keepPlans, type Plans } from "./plans.ts";
+import { DEFAULT_OPTIONS, prepareSystem, type System } from "./solver.ts";
 import {
   averageOver,
   certainState,
@@ -25,36 +26,37 @@ import {
 } from "./state-law.ts";
 import { stepBack } from "./steps.ts";
 import { expectedTotals } from "./totals.ts";
+import { type KindOf, viewOf } from "./view.ts";
 
 const MOST_WORK = 2e9;
 const MOST_STEPS = 2e6;
 /** Steps between two looks at the bracket. */
 const STRIDE = 8;
 
-/** Plans of the full chains of an automaton, by what they depend on: they serve every kind and every probability. */
-const plansOf = new WeakMap<Automaton, Map<string, Plan>>();
+/** Plans of the full chains, by view: they serve every choice of probabilities. */
+const plansOf = new WeakMap<Automaton, Plans>();
 
-/** The long-run share of steps whose output satisfies `isRaise`; interval proven, 1e-12 wide or less for most chains. */
+/** The long-run share of steps with an event, as `kindOf` tells; the interval is proven, and 1e-12 wide or less for most chains. */
 export function raiseRate(
   automaton: Automaton,
-  isRaise: (output: number) => boolean,
+  kindOf: KindOf,
   probabilities: DoubleDoubles,
   start: StateLaw = certainState(0),
 ): Estimate {
-  const { system, law, raise } = prepare(automaton, isRaise, probabilities, start);
+  const { system, law, raise } = prepare(automaton, kindOf, probabilities, start);
   const rates = classRates(system, raise);
   return combineRates(system, law, rates);
 }
 
-/** The mean number of steps among the first n (whole, >= 0) whose output satisfies `isRaise`. */
+/** The mean number of steps with an event among the first n (whole, >= 0). */
 export function countRaises(
   automaton: Automaton,
-  isRaise: (output: number) => boolean,
+  kindOf: KindOf,
   probabilities: DoubleDoubles,
   n: number,
   start: StateLaw = certainState(0),
 ): Estimate {
-  const { system, law, raise } = prepare(automaton, isRaise, probabilities, start);
+  const { system, law, raise } = prepare(automaton, kindOf, probabilities, start);
   const { chain } = system;
   const { period, phaseOf } = findPhases(chain.shape, law.places);
   const { size, widestRow } = chain.shape;
@@ -90,46 +92,17 @@ type Prepared = { readonly system: System; readonly law: StartLaw; readonly rais
 
 function prepare(
   automaton: Automaton,
-  isRaise: (output: number) => boolean,
+  kindOf: KindOf,
   probabilities: DoubleDoubles,
   start: StateLaw,
 ): Prepared {
-  const usable = usableColumns(probabilities);
-  const plan = planFor(automaton, usable, start.states);
+  const view = viewOf(automaton, kindOf);
+  const marks = markTransitions(view);
+  const plans = plansOf.get(view) ?? keepPlans(view, marks, false, DEFAULT_OPTIONS);
+  plansOf.set(view, plans);
+  const plan = plans(probabilities, start.states);
   const chain = fillChain(plan.shape, probabilities);
-  const raise = raiseChances(automaton, plan.shape, isRaise, usable, probabilities);
-  return { system: prepareSystem(plan, chain), law: placeLaw(plan.shape, start), raise };
-}
-
-function planFor(automaton: Automaton, usable: Int32Array, starts: Int32Array): Plan {
-  const plans = plansOf.get(automaton) ?? new Map<string, Plan>();
-  plansOf.set(automaton, plans);
-  const key = `${usable.join()}|${starts.join()}`;
-  const known = plans.get(key);
-  if (known) return known;
-  const weights = new Float64Array(automaton.columns).fill(1 / usable.length);
-  const none = markTransitions(automaton, () => false);
-  const plan = planShape(shapeChain(automaton, none, false, starts, usable, weights));
-  plans.set(key, plan);
-  return plan;
-}
-
-/** By place, the chance of such an output at the next step. */
-function raiseChances(
-  { columns, output }: Automaton,
-  shape: Shape,
-  isRaise: (output: number) => boolean,
-  usable: Int32Array,
-  probabilities: DoubleDoubles,
-): Float64Array {
-  const chances = new Float64Array(shape.size);
-  for (let place = 0; place < shape.size; place++) {
-    for (const column of usable) {
-      const out = output[shape.stateOf[place]! * columns + column]!;
-      if (out !== 0 && isRaise(out)) chances[place]! += probabilities.high[column]!;
-    }
-  }
-  return chances;
+  return { system: prepareSystem(plan, chain), law: placeLaw(plan.shape, start), raise: chain.mark };
 }
 
 /** By class: the rate where it is closed, with a bound of its relative error; null where it can be left. */
@@ -157,9 +130,7 @@ function closedRate(system: System, k: number, raise: Float64Array): { value: nu
   const { size } = chain.shape;
   const first = chain.shape.classStart[k]!;
   const anchor = chain.shape.classStart[k + 1]! - 1;
-  // The chances are sums of up to a row of rounded probabilities.
-  const own = (chain.shape.widestRow + 4) * UNIT;
-  if (first === anchor) return { value: raise[anchor]!, bound: own };
+  if (first === anchor) return { value: raise[anchor]!, bound: UNIT };
   const solver = system.solverOf(k);
   const ones = new Float64Array(size).fill(1);
   const cycleCost = ones.slice();
@@ -170,7 +141,7 @@ function closedRate(system: System, k: number, raise: Float64Array): { value: nu
   const bound = certifyCycle(chain, k, ones, raise, { cycleCost, cycleGain, gainWeight });
   return {
     value: cycleGain[anchor]! / cycleCost[anchor]!,
-    bound: bound === null ? null : (bound + own) * (1 + 2 * bound),
+    bound: bound === null ? null : bound * (1 + 2 * bound) + 2 * UNIT,
   };
 }
 

@@ -9,22 +9,15 @@
 import type Fraction from "fraction.js";
 import { InternalError } from "../../grammar/internal-error.ts";
 import type { Automaton } from "../machine/automaton.ts";
-import { fillChain, type Marks, markTransitions, shapeChain, usableColumns } from "./chain.ts";
+import { fillChain, type Marks, markTransitions } from "./chain.ts";
 import { type DoubleDoubles, UNIT } from "./double-double.ts";
-import { MOST_PLACES } from "./elimination.ts";
 import { exitsOfKind, findHopeless, intoHopeless, isCertain } from "./endings.ts";
 import { exactMean } from "./exact-mean.ts";
 import { beginLaw } from "./law.ts";
 import { type Means, meanSteps } from "./mean.ts";
+import { keepPlans } from "./plans.ts";
 import { type Distribution, distributionOf, type Quantile } from "./quantile.ts";
-import {
-  DEFAULT_OPTIONS,
-  type Plan,
-  planShape,
-  prepareSystem,
-  type SolverOptions,
-  type System,
-} from "./solver.ts";
+import { DEFAULT_OPTIONS, type Plan, prepareSystem, type SolverOptions, type System } from "./solver.ts";
 import {
   averageOver,
   certainState,
@@ -35,6 +28,7 @@ import {
 } from "./state-law.ts";
 import { expectedTotals } from "./totals.ts";
 import { stepVariances } from "./variance.ts";
+import { type KindOf, viewOf } from "./view.ts";
 
 export type { Quantile } from "./quantile.ts";
 export type { Estimate, StateLaw } from "./state-law.ts";
@@ -62,52 +56,34 @@ export type RunLengths = {
   readonly signalled: (n: number) => Estimate;
   /** The smallest n with P(T <= n) >= q, 0 < q <= 1; Infinity where the probability never comes to q. */
   readonly quantile: (q: Fraction) => Quantile;
-  /** The chance that it happens, first with an output that satisfies the predicate; right to about 1e-13 relative. */
-  readonly endsIn: (isKind: (output: number) => boolean) => number;
+  /** The chance that it happens, the first time with an event of the kind; right to about 1e-13 relative. */
+  readonly endsIn: (isKind: (kind: number) => boolean) => number;
 };
 
 export type RunLengthSolver = {
-  /** The run lengths under the probabilities, from state 0 or from a law over the states. */
+  /** The run lengths under the probabilities, from the start or from a law over the states. */
   readonly under: (probabilities: ColumnProbabilities, start?: StateLaw) => RunLengths;
 };
 
-/** A solver for runs that end at the first transition whose output satisfies `stops` (asked for outputs other than 0 only). */
+/**
+ * A solver for runs that end at the first event: the first transition whose output `kindOf` makes one of. States, in the law a
+ * run begins from, are those of `viewOf(automaton, kindOf)`.
+ */
 export function prepareRunLengths(
   automaton: Automaton,
-  stops: (output: number) => boolean,
+  kindOf: KindOf,
   options: SolverOptions = DEFAULT_OPTIONS,
 ): RunLengthSolver {
-  const marks = markTransitions(automaton, stops);
-  const plans = new Map<string, Plan>();
-  const planFor = (probabilities: ColumnProbabilities, starts: Int32Array): Plan => {
-    const usable = usableColumns(probabilities);
-    const weights = anchorWeights(automaton, probabilities, usable);
-    const key = `${usable.join()}|${starts.join()}|${weights.join()}`;
-    const known = plans.get(key);
-    if (known) return known;
-    const plan = planShape(shapeChain(automaton, marks, true, starts, usable, weights), options);
-    plans.set(key, plan);
-    return plan;
-  };
+  const view = viewOf(automaton, kindOf);
+  const marks = markTransitions(view);
+  const planFor = keepPlans(view, marks, true, options);
   const under = (probabilities: ColumnProbabilities, start: StateLaw = certainState(0)): RunLengths => {
     if (probabilities.high.length !== automaton.columns)
       throw new InternalError("a probability a column is due");
     const plan = planFor(probabilities, start.states);
-    return describe({ automaton, marks, plan, probabilities, start, options });
+    return describe({ automaton: view, marks, plan, probabilities, start, options });
   };
   return { under };
-}
-
-/**
- * By column, what chooses the anchors: for machines small enough to be eliminated equal weights, so that one shape serves
- * all probabilities; for larger ones the probabilities, since sweeps want short cycles.
- */
-function anchorWeights(
-  { states, columns }: Automaton,
-  { high }: ColumnProbabilities,
-  usable: Int32Array,
-): Float64Array {
-  return states > MOST_PLACES ? high : new Float64Array(columns).fill(1 / usable.length);
 }
 
 type Question = {
@@ -170,8 +146,9 @@ function averageMean(means: Means, law: StartLaw, start: StateLaw): { value: num
   let bound = 0;
   for (let s = 0; s < law.places.length; s++)
     if (law.weights[s] !== 0 || start.bracket) bound = Math.max(bound, means.bound[law.places[s]!]!);
-  if (law.places.length > 1) bound += 2 * law.places.length * UNIT;
-  if (start.bracket) {
+  if (!start.bracket) {
+    if (law.places.length > 1) bound += 2 * law.places.length * UNIT;
+  } else {
     const { low, high } = start.bracket(pick(means.steps, law));
     const off = Math.max(high / value - 1, 1 - low / value) + 2 * UNIT;
     bound = off + bound * (1 + off);

@@ -48,6 +48,8 @@ export type StandardLaw = {
   /** The value exceeded with this chance where it is rational for certain, else null. */
   readonly exactQuantile?: (above: Fraction) => Fraction | null;
   readonly tails: (at: DoubleDouble) => Tails;
+  /** On the line: over what width the density bends in its middle, where that is not about 1. */
+  readonly core?: number;
   /** Per unit of the standard variable. */
   readonly density: (at: DoubleDouble) => number;
   /** The chance between two places in closed form; else from the tails and the density. */
@@ -75,8 +77,8 @@ function keep(difference: number, of: number): number | null {
 
 /**
  * The chance between two places: the difference of the smaller tails, and where that would lose digits (a zone narrow for
- * where it lies) the integral of the density, in asinh x on the line and in ln x on the positive side, so that zones wide
- * in x but narrow in chance stay smooth. Relative error about 1e-15.
+ * where it lies) the integral of the density, in asinh(x/core) on the line and in ln x on the positive side, so that zones
+ * wide in x but narrow in chance stay smooth. Relative error about 1e-15.
  */
 export function betweenByDensity(law: StandardLaw, a: Tails, b: Tails): number {
   const width = dd.toNumber(dd.subtract(b.at, a.at));
@@ -85,28 +87,27 @@ export function betweenByDensity(law: StandardLaw, a: Tails, b: Tails): number {
   if (difference !== null) return difference;
   const x = a.at.high;
   if (law.support === "positive") {
-    return integrate(
-      (s) => law.density(dd.add(a.at, dd.pair(x * Math.expm1(s)))) * x * Math.exp(s),
-      Math.log1p(width / x),
-      1,
-    );
+    const node = (s: number) => law.density(dd.add(a.at, dd.pair(x * Math.expm1(s)))) * x * Math.exp(s);
+    return integrate(node, Math.log1p(width / x), 1);
   }
-  const root = Math.hypot(1, x);
-  return integrate(
-    (s) => {
-      const step = 2 * x * Math.sinh(s / 2) ** 2 + root * Math.sinh(s);
-      return law.density(dd.add(a.at, dd.pair(step))) * Math.hypot(1, x + step);
-    },
-    widthInAsinh(x, b.at.high, width),
-    1,
-  );
+  if (x >= 0) return outward(law, a.at, width, 1);
+  if (b.at.high <= 0) return outward(law, b.at, width, -1);
+  return outward(law, dd.pair(0), -dd.toNumber(a.at), -1) + outward(law, dd.pair(0), dd.toNumber(b.at), 1);
 }
 
-/** asinh b − asinh a for a < b, given b − a, without cancellation. */
-function widthInAsinh(a: number, b: number, width: number): number {
-  const [ra, rb] = [Math.hypot(1, a), Math.hypot(1, b)];
-  if (a < 0 && b > 0) return Math.asinh(b * ra - a * rb);
-  return Math.asinh((width * Math.abs(a + b)) / (Math.abs(b) * ra + Math.abs(a) * rb));
+/** ∫ of the density over `width` from a place on the line away from 0, to the right (1) or to the left (−1). */
+function outward(law: StandardLaw, from: DoubleDouble, width: number, direction: 1 | -1): number {
+  const core = law.core ?? 1;
+  const near = Math.abs(from.high) / core;
+  const far = near + width / core;
+  const root = Math.hypot(1, near);
+  // asinh far − asinh near, and sinh(asinh near + s) − near, every term positive.
+  const range = Math.asinh(((width / core) * (near + far)) / (far * root + near * Math.hypot(1, far)));
+  const node = (s: number) => {
+    const step = 2 * near * Math.sinh(s / 2) ** 2 + root * Math.sinh(s);
+    return law.density(dd.add(from, dd.pair(direction * core * step))) * Math.hypot(1, near + step);
+  };
+  return core * integrate(node, range, 1);
 }
 
 /** (cut − location)/scale, exactly, then rounded to 32 digits. */

@@ -77,18 +77,22 @@ function withMissing(
   zones: readonly dd.DoubleDouble[],
   missing: Quantity,
 ): readonly dd.DoubleDouble[] {
+  if (missing.value.n === 0n && zones.length === alphabet.letters.length) return zones;
   const chance = doubleDoubleOf(missing.value);
   const present = doubleDoubleOf(subtract(ONE, missing).value);
   return alphabet.letters.map((_, letter) => {
     const zone = zones[letter] ?? dd.pair(0);
-    const seen = chance.high === 0 ? zone : dd.multiply(zone, present);
+    const seen = dd.multiply(zone, present);
     return letter === alphabet.missing ? dd.add(seen, chance) : seen;
   });
 }
 
 function chancesOf(values: readonly dd.DoubleDouble[]): Chances {
-  return {
-    high: Float64Array.from(values, ({ high }) => high),
-    low: Float64Array.from(values, ({ low }) => low),
-  };
+  const high = new Float64Array(values.length);
+  const low = new Float64Array(values.length);
+  for (const [i, value] of values.entries()) {
+    high[i] = value.high;
+    low[i] = value.low;
+  }
+  return { high, low };
 }

@@ -86,8 +86,8 @@ export function doubleDoubleOfRatio(n: bigint, d: bigint): { readonly high: numb
   const shift = 122 - Math.floor(magnitude);
   const quotient = shift >= 0 ? (n << BigInt(shift)) / d : n / (d << BigInt(-shift));
   const high = Number(quotient);
-  const low = Number(quotient - BigInt(high));
-  return { high: scaled(high, -shift), low: scaled(low, -shift) };
+  const unit = 2 ** -shift;
+  return { high: high * unit, low: Number(quotient - BigInt(high)) * unit };
 }
 
 function doubleDoubleOfExtreme(n: bigint, d: bigint): { readonly high: number; readonly low: number } {

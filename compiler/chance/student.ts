@@ -53,5 +53,7 @@ export function standardStudent(degrees: DoubleDouble): StandardLaw {
     return dd.expToNumber(dd.negate(dd.add(exponent, logB))) / Math.sqrt(degrees.high);
   }
 
-  return { support: "line", exactQuantile: medianAtZero, tails, density };
+  // (1 + t²/ν) vanishes at t = ±i√ν: few degrees of freedom make a sharp middle.
+  const core = Math.min(1, Math.sqrt(degrees.high));
+  return { support: "line", exactQuantile: medianAtZero, core, tails, density };
 }

@@ -68,14 +68,18 @@ function assemble(policy: Policy, compiler: Compiler, attributed: boolean, combi
   const letters = compiler.columns.count;
   const { merged, newColumnOf } = mergeColumns(minimal, letters);
   const columnOf = compiler.columns.columnOf.map((column) => newColumnOf[column] as number);
-  const broken =
-    policy.missing === "break"
-      ? Int32Array.from(
-          { length: minimal.states },
-          (_, s) => minimal.next[s * minimal.columns + letters] as number,
-        )
-      : null;
+  const broken = canBreak(policy)
+    ? Int32Array.from(
+        { length: minimal.states },
+        (_, s) => minimal.next[s * minimal.columns + letters] as number,
+      )
+    : null;
   return { automaton: merged, columnOf, broken };
+}
+
+/** Whether a trial can be broken: not where every missing value has a letter that stands for it. */
+function canBreak({ missing, alphabets }: Policy): boolean {
+  return missing === "break" && alphabets.some((alphabet) => alphabet.missing === null);
 }
 
 /** State: one number for each signal, one for each `clear after`, and the place in the block. */
@@ -135,7 +139,7 @@ function product(
 
   return {
     width: placeAt + 1,
-    columns: policy.missing === "break" ? letters + 1 : letters,
+    columns: canBreak(policy) ? letters + 1 : letters,
     step: (pool, at, column, into) => {
       for (let i = 0; i <= placeAt; i++) from[i] = clearBefore[column] === 1 ? 0 : (pool[at + i] as number);
       into[placeAt] = 0;

@@ -42,7 +42,8 @@ export function trackRun(count: number, set: Uint8Array, gap: number, failures: 
 /**
  * `k of m SET`: the successes among the last trials, as a bit string with the last trial in bit 0. A success is dropped as
  * soon as it can no longer count: with j held, k − j more are needed, so the oldest must not be older than m − 1 − (k − j)
- * trials. That makes the tracker minimal at once, with C(m, k−1) states.
+ * trials. Fewer than k are held after every trial, so that k are only reached by a success. The tracker is minimal at once,
+ * with C(m, k−1) states.
  */
 export function trackScan(count: number, window: number, set: Uint8Array): Succession {
   if (window <= 31) return trackShortScan(count, window, set);
@@ -59,7 +60,7 @@ export function trackScan(count: number, window: number, set: Uint8Array): Succe
         carry = old >>> 31;
         held += bitCount(into[word] as number);
       }
-      const completes = held >= count && set[column] === 1 ? 1 : 0;
+      const completes = held >= count ? 1 : 0;
       for (let age = window - 1; age >= 0 && (held >= count || age > window - 1 - (count - held)); age--) {
         if (((into[age >> 5] as number) >>> (age & 31)) & 1) {
           into[age >> 5] = (into[age >> 5] as number) & ~(1 << (age & 31));
@@ -76,10 +77,9 @@ function trackShortScan(count: number, window: number, set: Uint8Array): Success
     width: 1,
     columns: set.length,
     step: (pool, at, column, into) => {
-      const success = set[column] as number;
-      let recent = ((pool[at] as number) << 1) | success;
+      let recent = ((pool[at] as number) << 1) | (set[column] as number);
       let held = bitCount(recent);
-      const completes = held >= count && success === 1 ? 1 : 0;
+      const completes = held >= count ? 1 : 0;
       while (recent !== 0) {
         const oldest = 31 - Math.clz32(recent);
         if (held < count && oldest <= window - 1 - (count - held)) break;

@@ -54,12 +54,17 @@ function failure(policy: Policy, expect: Expect, raised: readonly number[], wron
   return diagnose(
     "expect_fails",
     trial.span,
-    `at trial ${wrong + 1}${letterWords(policy, trial)} ${wanted} was expected, and ${found} was raised${before}`,
+    `at trial ${wrong + 1}${letterWords(policy, trial)} ${wanted} ${verb(wanted)} expected, and ${found} ${verb(found)} raised${before}`,
     {
+      hint: "change the policy, or what is expected of it; `tocsin replay FILE --letters` says why a signal is raised",
       related: [{ span: expect.span, message: `the expectation, ${expect.trials.length} trials long` }],
       data: { trial: wrong + 1, expected: wanted, raised: found },
     },
   );
+}
+
+function verb(names: string): string {
+  return names.includes(" and ") ? "were" : "was";
 }
 
 function wantedWords(policy: Policy, expect: Expect, index: number): string {

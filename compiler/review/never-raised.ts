@@ -21,34 +21,54 @@ export function checkNeverRaised(policy: Policy, machine: Machine, mostStates: n
 }
 
 /** In words, what keeps a signal from ever being raised. */
-export function causeOf(policy: Policy, index: number, mostStates: number): string {
-  const signal = policy.signals[index] as Signal;
-  const raisable = (changed: Policy, at: number) => {
+function causeOf(policy: Policy, index: number, mostStates: number): string {
+  const { condition } = policy.signals[index] as Signal;
+  const raisable = (changed: Policy) => {
     const { value } = buildMachine(changed, { mostStates });
-    return value?.output.some((output) => ((output >>> at) & 1) === 1) ?? false;
+    return value?.output.some((output) => ((output >>> index) & 1) === 1) ?? false;
   };
-  const alone: Policy = { ...policy, signals: [signal], clearBefore: null, clearAfter: [], block: null };
-  if (!raisable(alone, 0)) return `no string of trials makes its condition "${signal.condition.text}" hold`;
   const suspects = suspectsOf(policy, index);
-  const culprits = suspects.filter(({ without }) => raisable(without, index));
-  const named = (culprits.length > 0 ? culprits : suspects).map(({ name }) => name);
-  return `${named.join(" or ")} clears its memory before "${signal.condition.text}" can hold`;
+  if (!raisable(without(policy, suspects)))
+    return `no string of trials makes its condition "${condition.text}" hold`;
+  const names = (found: readonly Suspect[]) => found.map(({ name }) => name).join(" and ");
+  const end = `its memory before "${condition.text}" can hold`;
+  const needed = suspects.filter((suspect) => raisable(without(policy, [suspect])));
+  if (needed.length === 1) return `${names(needed)} clears ${end}`;
+  if (needed.length > 1) return `${names(needed)} between them clear ${end}`;
+  const enough = suspects.filter(
+    (suspect) =>
+      !raisable(
+        without(
+          policy,
+          suspects.filter((other) => other !== suspect),
+        ),
+      ),
+  );
+  if (enough.length > 1) return `${names(enough)} each clear ${end}`;
+  return `${names(suspects)} between them clear ${end}`;
 }
 
-/** All that may clear the memory of a signal from outside, each with the policy that lacks it. */
-function suspectsOf(policy: Policy, index: number): { name: string; without: Policy }[] {
-  const suspects: { name: string; without: Policy }[] = [];
+/** Something that may clear the memory of a signal from outside, and the policy without it. */
+type Suspect = { readonly name: string; readonly remove: (policy: Policy) => Policy };
+
+function without(policy: Policy, suspects: readonly Suspect[]): Policy {
+  return suspects.reduce((left, { remove }) => remove(left), policy);
+}
+
+function suspectsOf(policy: Policy, index: number): Suspect[] {
+  const suspects: Suspect[] = [];
   if (policy.clearBefore)
-    suspects.push({ name: "`clear before`", without: { ...policy, clearBefore: null } });
-  for (const condition of policy.clearAfter) {
-    const clearAfter = policy.clearAfter.filter((other) => other !== condition);
-    suspects.push({ name: `\`clear after ${condition.text}\``, without: { ...policy, clearAfter } });
-  }
+    suspects.push({ name: "`clear before`", remove: (from) => ({ ...from, clearBefore: null }) });
+  for (const condition of policy.clearAfter)
+    suspects.push({
+      name: `\`clear after ${condition.text}\``,
+      remove: (from) => ({ ...from, clearAfter: from.clearAfter.filter((other) => other !== condition) }),
+    });
   if (policy.block)
-    suspects.push({ name: `\`blocks of ${policy.block}\``, without: { ...policy, block: null } });
+    suspects.push({ name: `\`blocks of ${policy.block}\``, remove: (from) => ({ ...from, block: null }) });
   policy.signals.forEach((other, at) => {
     if (at !== index && other.response === "restart")
-      suspects.push({ name: `the restart of "${other.name}"`, without: withOwnResponse(policy, at) });
+      suspects.push({ name: `the restart of "${other.name}"`, remove: (from) => withOwnResponse(from, at) });
   });
   return suspects;
 }

@@ -74,7 +74,7 @@ function explain(policy: Policy, require: Require, worst: Verdict, wrong: number
   const where = all > 1 ? ` at ${pointWords(policy, worst.point)}` : "";
   const others =
     all > 1
-      ? `; of ${all} values ${wrong} ${outcome === "fails" ? "fail" : "stay open"}, this is the worst`
+      ? `; of ${all} values ${wrong} ${outcomeWords(outcome, wrong)}${wrong > 1 ? ", this is the worst" : ""}`
       : "";
   const found = figure(measured.value);
   const reason = measured.reason ? `, since ${measured.reason}` : "";
@@ -100,6 +100,11 @@ function explain(policy: Policy, require: Require, worst: Verdict, wrong: number
     `"${measure.text}" lies between ${measured.low} and ${measured.high}${where}, which leaves open whether it is ${wanted}${others}`,
     { hint: "require a value that is not so close to it", data },
   );
+}
+
+function outcomeWords(outcome: Verdict["outcome"], count: number): string {
+  if (outcome === "fails") return count === 1 ? "fails" : "fail";
+  return count === 1 ? "stays open" : "stay open";
 }
 
 function requirementWords({ requirement }: Require): string {

@@ -2,7 +2,14 @@
 
 import { describe, expect, test } from "vitest";
 import { type CycleSolution, certifyCycle, certifyOthers } from "../../compiler/analysis/certificate.ts";
-import { fillChain, markTransitions, shapeChain, usableColumns } from "../../compiler/analysis/chain.ts";
+import {
+  chooseAnchors,
+  fillChain,
+  findSkeleton,
+  markTransitions,
+  shapeChain,
+  usableColumns,
+} from "../../compiler/analysis/chain.ts";
 import { meanSteps } from "../../compiler/analysis/mean.ts";
 import { prepareRunLengths } from "../../compiler/analysis/run-lengths.ts";
 import { planShape, prepareSystem } from "../../compiler/analysis/solver.ts";
@@ -10,13 +17,11 @@ import { exactMoments, relativeError } from "../oracle/exact-chain.ts";
 import { plain, probabilitiesOf, type RandomCase, randomMachine, randomNumbers } from "./machines.ts";
 
 function chainOf({ automaton, weights }: RandomCase) {
-  const marks = markTransitions(automaton, () => true);
+  const marks = markTransitions(automaton);
   const probabilities = probabilitiesOf(weights);
   const usable = usableColumns(probabilities);
-  return fillChain(
-    shapeChain(automaton, marks, true, Int32Array.of(0), usable, probabilities.high),
-    probabilities,
-  );
+  const skeleton = findSkeleton(automaton, marks, true, Int32Array.of(0), usable);
+  return fillChain(shapeChain(skeleton, chooseAnchors(skeleton, probabilities.high)), probabilities);
 }
 
 describe("a solver stopped early", () => {

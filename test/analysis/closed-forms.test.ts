@@ -3,7 +3,13 @@
 
 import Fraction from "fraction.js";
 import { describe, expect, test } from "vitest";
-import { fillChain, markTransitions, shapeChain } from "../../compiler/analysis/chain.ts";
+import {
+  chooseAnchors,
+  fillChain,
+  findSkeleton,
+  markTransitions,
+  shapeChain,
+} from "../../compiler/analysis/chain.ts";
 import { meanSteps } from "../../compiler/analysis/mean.ts";
 import { prepareRunLengths } from "../../compiler/analysis/run-lengths.ts";
 import { planShape, prepareSystem } from "../../compiler/analysis/solver.ts";
@@ -14,8 +20,9 @@ import { eitherRun, plain, probabilitiesOf, rawScan, run, scan, words } from "./
 const anyOutput = () => true;
 const HALVES = [1n, 1n];
 
+/** Runs end at any output; each output is a kind of its own. */
 function lengthsOf(automaton: Automaton, weights: readonly bigint[]) {
-  return prepareRunLengths(automaton, anyOutput).under(probabilitiesOf(weights));
+  return prepareRunLengths(automaton, (output) => output).under(probabilitiesOf(weights));
 }
 
 /** Within the bound of an exact value. */
@@ -238,14 +245,9 @@ describe("limits in closed form", () => {
       next: Int32Array.of(1, 1, 0, 2, 1, 1),
       output: Int32Array.of(1, 0, 0, 0, 0, 1),
     };
-    const shape = shapeChain(
-      walk,
-      markTransitions(walk, anyOutput),
-      true,
-      Int32Array.of(0),
-      Int32Array.of(0, 1),
-      Float64Array.of(1, 1),
-    );
+    const marks = markTransitions(walk);
+    const skeleton = findSkeleton(walk, marks, true, Int32Array.of(0), Int32Array.of(0, 1));
+    const shape = shapeChain(skeleton, chooseAnchors(skeleton, Float64Array.of(1, 1)));
     const { steps } = meanSteps(
       prepareSystem(planShape(shape), fillChain(shape, probabilitiesOf(HALVES))),
       null,

@@ -1,7 +1,14 @@
 // Means and their proven bounds against exact whole-number elimination, on random machines and every state of them.
 
 import { describe, expect, test } from "vitest";
-import { fillChain, markTransitions, shapeChain, usableColumns } from "../../compiler/analysis/chain.ts";
+import {
+  chooseAnchors,
+  fillChain,
+  findSkeleton,
+  markTransitions,
+  shapeChain,
+  usableColumns,
+} from "../../compiler/analysis/chain.ts";
 import { meanSteps } from "../../compiler/analysis/mean.ts";
 import { planShape, prepareSystem, type SolverOptions } from "../../compiler/analysis/solver.ts";
 import { TO_THE_LAST } from "../../compiler/analysis/sweeps.ts";
@@ -15,14 +22,14 @@ const MACHINES = 270;
 
 /** Means, bounds and variances of all places, with the state of each. */
 function solve({ automaton, weights }: RandomCase, options: SolverOptions) {
-  const marks = markTransitions(automaton, () => true);
+  const marks = markTransitions(automaton);
   const probabilities = probabilitiesOf(weights);
   const usable = usableColumns(probabilities);
+  const skeleton = findSkeleton(automaton, marks, true, Int32Array.of(0), usable);
   // Sweeps want anchors that are often visited; elimination is content with any.
-  const anchorWeights = options.elimination
-    ? new Float64Array(automaton.columns).fill(1)
-    : probabilities.high;
-  const shape = shapeChain(automaton, marks, true, Int32Array.of(0), usable, anchorWeights);
+  const even = new Float64Array(automaton.columns).fill(1);
+  const anchors = chooseAnchors(skeleton, options.elimination ? even : probabilities.high);
+  const shape = shapeChain(skeleton, anchors);
   const system = prepareSystem(planShape(shape, options), fillChain(shape, probabilities), options);
   const means = meanSteps(system, null);
   return { shape, means, variances: stepVariances(system, means.steps) };

@@ -1,27 +1,18 @@
-// Every diagnostic of the check, as it is shown: one case or more for each code, in test/golden/diagnostics/.
+// Every diagnostic, as the command shows it: one case or more for each code, in test/golden/diagnostics/.
 // A case is CODE.tocsin, or CODE-2.tocsin and so on where a code has several faces; libraries lie in libraries/.
 
 import { readdirSync, readFileSync } from "node:fs";
 import { join } from "node:path";
 import { describe, expect, test } from "vitest";
-import { applyAllowances } from "../../compiler/check/allowances.ts";
-import { checkPolicy, isLibrary } from "../../compiler/check/check.ts";
-import { catalogue, type Diagnostic, sortDiagnostics } from "../../grammar/diagnostic.ts";
+import { compile } from "../../compiler/compile.ts";
+import { DEFAULT_MOST_STATES } from "../../compiler/machine/budget.ts";
+import { findingsOf } from "../../compiler/review/findings.ts";
+import { catalogue, type Diagnostic } from "../../grammar/diagnostic.ts";
 import { renderDiagnostic } from "../../grammar/render.ts";
 import { positionAt } from "../../grammar/source.ts";
 import { expectGolden, orphans } from "../golden.ts";
 
 const FOLDER = join(import.meta.dirname, "../golden/diagnostics");
-
-/** Codes that only a later stage gives: the machine, the analysis, the contracts. Their cases are run elsewhere. */
-const LATER: ReadonlySet<string> = new Set([
-  "signal_never",
-  "too_many_states",
-  "measure_not_built",
-  "require_fails",
-  "require_open",
-  "expect_fails",
-]);
 
 const cases = readdirSync(FOLDER)
   .filter((name) => name.endsWith(".tocsin"))
@@ -32,7 +23,7 @@ function codeOf(name: string): string {
   return name.replace(/-\d+$/, "");
 }
 
-/** What is said of a case, the paths as if its folder were the working folder. */
+/** What is said of a case by the whole check, the paths as if its folder were the working folder. */
 function judge(name: string): readonly Diagnostic[] {
   const read = (path: string) => {
     try {
@@ -41,9 +32,8 @@ function judge(name: string): readonly Diagnostic[] {
       return null;
     }
   };
-  const { value, diagnostics } = checkPolicy(`${name}.tocsin`, read);
-  if (value === undefined || isLibrary(value)) return diagnostics;
-  return sortDiagnostics(applyAllowances(value.allowances, diagnostics));
+  const path = `${name}.tocsin`;
+  return findingsOf(compile(read(path) ?? "", { path, read }), DEFAULT_MOST_STATES);
 }
 
 /** Text for people, then one line of JSON for each diagnostic. */
@@ -58,16 +48,15 @@ function expectation(diagnostics: readonly Diagnostic[]): string {
 }
 
 describe("golden diagnostics", () => {
-  test.each(cases.filter((name) => !LATER.has(codeOf(name))))("%s", (name) => {
+  test.each(cases)("%s", (name) => {
     const diagnostics = judge(name);
     expect(diagnostics.map(({ code }) => code)).toContain(codeOf(name));
     expectGolden(join(FOLDER, `${name}.expect`), expectation(diagnostics));
   });
 
-  test("every code of the check has a case, and every case a code", () => {
+  test("every code has a case, and every case a code", () => {
     const shown = new Set(cases.map(codeOf));
-    const due = Object.keys(catalogue).filter((code) => !LATER.has(code));
-    expect(due.filter((code) => !shown.has(code))).toEqual([]);
+    expect(Object.keys(catalogue).filter((code) => !shown.has(code))).toEqual([]);
     expect([...shown].filter((code) => !Object.hasOwn(catalogue, code))).toEqual([]);
   });
 

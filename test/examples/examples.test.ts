@@ -1,6 +1,6 @@
 /**
  * Every example does what its README says, and its figures are what an independent computation makes them.
- * UPDATE_GOLDEN=1 rewrites what the READMEs say is printed, and their tables; read the difference before committing it.
+ * UPDATE_GOLDEN=1 rewrites what the READMEs say is printed, and their lists of figures; read the difference before committing it.
  */
 import { spawnSync } from "node:child_process";
 import { cpSync, mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from "node:fs";
@@ -8,7 +8,8 @@ import { tmpdir } from "node:os";
 import { basename, join } from "node:path";
 import { afterAll, describe, expect, test } from "vitest";
 import { expectGolden } from "../golden.ts";
-import { type Example, examples } from "./figures.ts";
+import type { Example } from "./example.ts";
+import { examples } from "./figures.ts";
 import { law } from "./independent.ts";
 import { run, withFigures, withOutput } from "./readme.ts";
 
@@ -58,20 +59,21 @@ test("the recorded data is what the generator makes", () => {
   expect(made.status).toBe(0);
 });
 
+// The first example of the language reference is kept as it stands there, spaces and all.
+test.each(examples.filter(({ folder }) => folder !== "fill-weight"))(
+  "the policy of $folder is written as `format` writes it",
+  ({ folder, policy }) => {
+    const { status, stdout, stderr } = run(["format", "--verify", policy], join(root, folder));
+    expect(status, stdout + stderr).toBe(0);
+  },
+);
+
 describe.each(examples)("$folder", (example) => {
   test("checks clean, without a warning", () => {
     const { stdout, status } = run(["check", "--json", example.policy], join(root, example.folder));
     const { files } = JSON.parse(stdout) as { files: { ok: boolean; diagnostics: unknown[] }[] };
     expect(files).toEqual([expect.objectContaining({ ok: true, diagnostics: [] })]);
     expect(status).toBe(0);
-  });
-
-  test("is written as `format` writes it", () => {
-    const { status, stdout, stderr } = run(
-      ["format", "--verify", example.policy],
-      join(root, example.folder),
-    );
-    expect(status, stdout + stderr).toBe(0);
   });
 
   test("prints what its README says", () => {
@@ -110,8 +112,12 @@ function compareRuns({ folder, policy, chances, walks }: Example): void {
     const what = `${basename(policy)}, ${found.signal}, ${found.process} ${JSON.stringify(found.at)}`;
     expectNear(found.arl, known.arl, `${what}, arl`);
     expectNear(found.sdrl, known.sdrl, `${what}, sdrl`);
-    for (const [q, n] of [...Object.entries(found.quantiles), ["0.5", found.mrl] as const])
-      expectNear(n, known.quantile(Number(q)), `${what}, quantile ${q}`);
+    for (const [q, n] of [...Object.entries(found.quantiles), ["0.5", found.mrl] as const]) {
+      const smallest = known.quantile(Number(q));
+      // Where P(T ≤ n) is q itself, as with a normal value beyond its own mean, doubles cannot tell n from n + 1.
+      const tie = Math.abs(known.signalled(smallest) - Number(q)) < 1e-12 && n === smallest + 1;
+      if (!tie) expectNear(n, smallest, `${what}, quantile ${q}`);
+    }
     for (const [n, p] of Object.entries(found.signalled))
       expectNear(p, known.signalled(Number(n)), `${what}, signalled within ${n}`);
     for (const [rule, p] of Object.entries(known.first))

@@ -3,7 +3,7 @@
  * compared with. Nothing of grammar/, compiler/ or runtime/ is imported.
  *
  * Tails are sums of 64-digit numbers (mathjs BigNumber), so that nothing is lost to subtraction. Run lengths come from a
- * chain whose moves are written out by hand (`figures.ts`): mean and standard deviation by elimination without subtraction, or in exact fractions
+ * chain whose moves are written out by hand (`scenarios/`): mean and standard deviation by elimination without subtraction, or in exact fractions
  * by mathjs's `lusolve`; the distribution by stepping the chain forward. Slow, plain, and good to about 1e-11.
  */
 import { all, type BigNumber, create, type Fraction, type MathNumericType } from "mathjs";
@@ -59,7 +59,7 @@ export function chiSquareTail(evenDf: number, x: number, noncentrality = 0): num
   const half = big(noncentrality).div(2);
   let weight = half.neg().exp();
   let sum = big(0);
-  for (let j = 0; j < 400; j++) {
+  for (let j = 0; weight.gt("1e-30"); j++) {
     sum = sum.plus(weight.times(erlang(evenDf / 2 + j, big(x).div(2))));
     weight = weight.times(half).div(j + 1);
   }
@@ -69,7 +69,7 @@ export function chiSquareTail(evenDf: number, x: number, noncentrality = 0): num
 /** The x that a chi-square value exceeds with the given probability, by bisection. */
 export function chiSquareUpper(evenDf: number, probability: number): number {
   let [low, high] = [0, 400];
-  for (let i = 0; i < 200; i++) {
+  for (let i = 0; i < 60; i++) {
     const middle = (low + high) / 2;
     if (chiSquareTail(evenDf, middle) > probability) low = middle;
     else high = middle;
@@ -122,8 +122,19 @@ export type Law = {
   readonly first: Readonly<Record<string, number>>;
 };
 
-/** The law of the run length of a chain whose letters are drawn independently with the given chances. */
+const laws = new WeakMap<Walk<never>, Map<string, Law>>();
+
+/** The law of the run length of a chain whose letters are drawn independently with the given chances. Worked out once. */
 export function law<S>(walk: Walk<S>, chances: Readonly<Record<string, number>>): Law {
+  const known = laws.get(walk as unknown as Walk<never>) ?? new Map<string, Law>();
+  laws.set(walk as unknown as Walk<never>, known);
+  const key = JSON.stringify(chances);
+  const found = known.get(key) ?? workOut(walk, chances);
+  known.set(key, found);
+  return found;
+}
+
+function workOut<S>(walk: Walk<S>, chances: Readonly<Record<string, number>>): Law {
   const rows = explore(walk, Object.keys(chances));
   const matrix = rows.map((moves) => {
     const row: number[] = rows.map(() => 0);

@@ -1,12 +1,12 @@
 /**
  * The README of an example as a script: its fenced `console` blocks hold command lines after `$ ` and what they print, its
- * table of figures what was checked and against what. Commands are split here, not by a shell: words, single quotes, and
+ * last section the figures and where each was checked. Commands are split here, not by a shell: words, single quotes, and
  * `< FILE` for standard input. A command that ends otherwise than with 0 is followed by the line `[exit CODE]`.
  */
 import { spawnSync } from "node:child_process";
 import { readFileSync } from "node:fs";
 import { join } from "node:path";
-import type { Figure } from "./figures.ts";
+import type { Figure } from "./example.ts";
 
 const command = join(import.meta.dirname, "../../dist/tocsin.js");
 
@@ -46,13 +46,12 @@ export function withOutput(readme: string, folder: string): string {
   });
 }
 
-const head = "| figure | value | where it is known from |\n| --- | --- | --- |\n";
+const heading = "## Where the figures were checked\n";
 
-/** The README with the table of figures as the list has it. */
+/** The README with its last section, the list of figures, as the scenario has it. */
 export function withFigures(readme: string, figures: readonly Figure[]): string {
-  const rows = figures.map(({ measure, printed, source }) => `| \`${measure}\` | ${printed} | ${source} |\n`);
-  const at = readme.indexOf(head);
-  if (at < 0) throw new Error("the README has no table of figures");
-  const after = readme.slice(at + head.length).replace(/^(\|.*\n)*/, "");
-  return readme.slice(0, at) + head + rows.join("") + after;
+  const at = readme.indexOf(heading);
+  if (at < 0) throw new Error("the README does not say where the figures were checked");
+  const items = figures.map(({ measure, printed, source }) => `- \`${measure}\` is ${printed}: ${source}\n`);
+  return `${readme.slice(0, at)}${heading}\n${items.join("")}`;
 }

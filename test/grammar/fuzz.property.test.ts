@@ -38,7 +38,7 @@ function soundly(text: string): Parsed {
       expect(end).toBeGreaterThanOrEqual(start);
       expect(end).toBeLessThanOrEqual(source.text.length);
     }
-    expect(renderDiagnostic(diagnostic)).not.toMatch(/[\0-\x08\x0b-\x1f]|undefined|NaN/);
+    expect(renderDiagnostic(diagnostic).replace(/[\n\t]/g, "")).not.toMatch(/\p{Cc}|undefined|NaN/u);
   }
   expect(diagnostics).toEqual(sortDiagnostics(diagnostics));
   checkSpans(tree.declarations, 0, source.text.length);
@@ -71,7 +71,7 @@ test("random characters", () => {
     }),
     settings,
   );
-});
+}, 300_000);
 
 const word = fc.oneof(
   fc.constantFrom(...reservedWords, ...Object.keys(placed)),
@@ -103,7 +103,7 @@ test("random words and signs", () => {
     }),
     settings,
   );
-});
+}, 300_000);
 
 /** A change of one token of a text. */
 const change = fc.record({
@@ -152,7 +152,7 @@ test("policies with a few words changed", () => {
     ),
     settings,
   );
-});
+}, 300_000);
 
 test("one word changed in one declaration: told of near the place, and not ten times", () => {
   fc.assert(
@@ -167,4 +167,4 @@ test("one word changed in one declaration: told of near the place, and not ten t
     }),
     settings,
   );
-});
+}, 300_000);

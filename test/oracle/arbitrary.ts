@@ -166,7 +166,7 @@ function makePatternCondition(making: Making): Condition {
 function makeLeaf(making: Making): Condition {
   const { tape } = making;
   making.fuel--;
-  switch (tape.below(8)) {
+  switch (tape.below(9)) {
     case 0:
       return { kind: "set", set: makeSet(making) };
     case 1:

@@ -89,7 +89,7 @@ function parts(policy: Policy): { sets: SetExpr[]; conditions: Condition[] } {
 }
 
 describe("the random policies", () => {
-  const cases = fc.sample(randomCase(2, 20), { seed: 1, numRuns: 300 });
+  const cases = fc.sample(randomCase(4, 20), { seed: 1, numRuns: 300 });
 
   test("no SET is empty, no letter assigned twice or to itself", () => {
     for (const { policy: of } of cases) {
@@ -138,6 +138,6 @@ describe("the random policies", () => {
     const raising = cases.filter(({ policy: of, strings }) =>
       strings.some((stream) => answers(of, stream).some(({ raised }) => raised.length > 0)),
     );
-    expect(raising.length).toBeGreaterThan(200);
+    expect(raising.length).toBeGreaterThan(180);
   });
 });

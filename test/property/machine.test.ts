@@ -4,12 +4,17 @@ import fc from "fast-check";
 import { describe, expect, test } from "vitest";
 import { type Case, randomCase, seed, shrinkingLimited } from "../oracle/arbitrary.ts";
 import {
+  and,
   andThen,
+  asSet,
+  not,
+  or,
   overlapping,
   pattern,
   policy,
   row,
   rows,
+  rule,
   run,
   scan,
   separate,
@@ -19,7 +24,7 @@ import {
   unless,
   weak,
 } from "../oracle/build.ts";
-import type { Condition, Policy, Row } from "../oracle/policy.ts";
+import { type Condition, everyTrial, type Policy, type Row } from "../oracle/policy.ts";
 import { uniforms } from "../oracle/simulate.ts";
 import { conditionText, policyText, valueFor } from "../oracle/text.ts";
 import { type Answer, answers, begin, type State, step } from "../oracle/twin.ts";
@@ -93,6 +98,31 @@ describe("every condition form, over all strings", () => {
   });
 });
 
+describe("every condition form in its other places, over all strings", () => {
+  // What shows when memory cleared: a run of three trials of any kind.
+  const clearing = (condition: Condition, more: Partial<Policy>): Policy => ({
+    ...watched(run(3, "any"), "continue"),
+    clearAfter: [condition],
+    ...more,
+  });
+  const waiting = (condition: Condition, more: Partial<Policy>): Policy => {
+    const quiet = { kind: "until" as const, condition };
+    return { ...watched(set("any"), "own"), signals: [signal(set("any"), { quiet })], ...more };
+  };
+
+  test.each([
+    ["clear after", clearing],
+    ["quiet until", waiting],
+  ])("%s", (_, place) => {
+    for (const condition of FORMS) {
+      compareAllStrings(place(condition, {}), rows("abc"), 6);
+      compareAllStrings(place(condition, { missing: "break" }), rows("ab?"), 6);
+      compareAllStrings(place(condition, { blocks: 4, missing: "break" }), rows("ac?"), 7);
+      compareAllStrings(place(condition, { clearBefore: [asSet("c")], blocks: 4 }), rows("abc"), 6);
+    }
+  });
+});
+
 /** Rules and their strings without regard to order; one rule on one string counts once. */
 function reasonsOf(answer: Pick<Answer, "because">): string {
   const words = answer.because.map(({ rule, trials: [from, to] }) => `${rule} ${from}..${to}`);
@@ -124,6 +154,51 @@ function compareStream(policy: Policy, machine: Ours, stream: readonly Row[]): v
       (causes[at]!.every((rule) => rules.has(rule)) && rules.size === new Set(causes[at]).size);
     if (!same) disagree(policy, so, [...rules], { causes: causes[at] });
   }
+}
+
+describe("why, over all strings", () => {
+  const [r1, r2, r3] = [rule("r1"), rule("r2"), rule("r3")];
+  const rules = [
+    { name: "r1", condition: run(2, "a") },
+    { name: "r2", condition: weak(2, "b", 1, "c") },
+    { name: "r3", condition: or(r1, pattern("cb")) },
+  ];
+  const formulas: readonly Condition[] = [
+    or(r1, r2),
+    or(or(r1, r2), r3),
+    and(or(r1, r3), not(r2)),
+    and(r3, or(r1, r2)),
+    or(r2, and(r3, not(r1))),
+    not(or(not(r3), r2)),
+    and(or(r1, r2), not(and(not(r1), pattern("cb")))),
+    or(andThen(r1, r2), or(scan(2, 3, "c"), unless(r2, r1, 2))),
+    or(or(set("a"), run(2, "a")), pattern("ba")),
+    and(not(not(r3)), not(not(or(r1, r2)))),
+    or(separate(2, r1), overlapping(2, or(r1, r2))),
+    // An operand that does not hold explains nothing, whatever completes in it; nor does one that holds under a `not`.
+    or(set("a"), and(r3, not(r1))),
+    and(set("a|b"), not(and(or(not(r1), set("a")), set("b")))),
+  ];
+
+  test.each(formulas.map((formula) => [conditionText(formula), formula] as const))("%s", (_, formula) => {
+    for (const response of ["own", "continue"] as const) {
+      const other = signal(or(r2, r3), { name: "other", response: "restart" });
+      const of = policy("abc", [signal(formula, { response }), other], { rules });
+      const alone = policy("abc", [signal(formula, { response })], { rules });
+      for (const each of [of, alone]) {
+        const machine = compiled(each);
+        for (const stream of allStreams(each, 6)) compareStream(each, machine, stream);
+      }
+    }
+  });
+});
+
+/** Every stream of the length. */
+function allStreams(of: Policy, length: number): readonly (readonly Row[])[] {
+  let streams: readonly (readonly Row[])[] = [[]];
+  for (let t = 0; t < length; t++)
+    streams = streams.flatMap((stream) => everyTrial(of).map((trial) => [...stream, trial]));
+  return streams;
 }
 
 describe("long memories", () => {

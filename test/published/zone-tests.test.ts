@@ -164,6 +164,13 @@ describe("Feller, An Introduction to Probability Theory and Its Applications, vo
     }
   });
 
+  // Of the 16 words of four tosses 8 hold two heads in a row, of the 4 words of two tosses 1: P(T ≤ n) is q itself.
+  test("a quantile that falls on a tie is the smallest n with P(T ≤ n) ≥ q", async () => {
+    const run = row(await assess(coin(rules), "--process", "fair"), "run_2", "fair");
+    expect(run.mrl).toBe(4);
+    expect(run.quantiles["0.25"]).toBe(2);
+  });
+
   test("the chance of no run of k heads in n tosses is near β/αⁿ⁺¹, and 9/64 for n = 10, k = 2 (seen)", async () => {
     const assessment = await assess(coin(rules), "--by", "10,20,30");
     expectExact(1 - row(assessment, "run_2", "fair").signalled["10"]!, 9 / 64);
