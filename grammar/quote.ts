@@ -13,7 +13,7 @@ export function quote(text: string): string {
 }
 
 /** Every character that cannot be seen replaced by its code point, as in `U+0007`. */
-export function visible(text: string): string {
+function visible(text: string): string {
   return text.replace(unseen, (character) => `U+${codePoint(character)}`);
 }
 

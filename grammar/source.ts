@@ -48,10 +48,3 @@ function countCodePoints(text: string, start: number, end: number): number {
   }
   return count;
 }
-
-/** The text of a line counted from 1, without its line break. */
-export function lineText(source: Source, line: number): string {
-  const start = source.lineStarts[line - 1] ?? source.text.length;
-  const end = source.lineStarts[line] ?? source.text.length;
-  return source.text.slice(start, end).replace(/[\r\n]+$/, "");
-}

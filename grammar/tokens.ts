@@ -79,7 +79,7 @@ export function isDeclarationWord(word: string): word is DeclarationWord {
 
 export type DeclarationWord = (typeof declarationWords)[number];
 export type ReservedWord = DeclarationWord | (typeof innerWords)[number];
-export type PlacedWord = (typeof placedWords)[number];
+type PlacedWord = (typeof placedWords)[number];
 
 /** Every word that cannot be a name. */
 export const reservedWords: readonly ReservedWord[] = [...declarationWords, ...innerWords];
@@ -202,7 +202,7 @@ export const lookalikes: readonly Lookalike[] = [
 ];
 
 /** A comment that begins with `//`, as in other languages; the parser never sees it. */
-export const OtherComment = createToken({ name: "OtherComment", pattern: /\/\/[^\r\n]*/, group: "mistakes" });
+const OtherComment = createToken({ name: "OtherComment", pattern: /\/\/[^\r\n]*/, group: "mistakes" });
 const Comment = createToken({ name: "Comment", pattern: /#[^\r\n]*/, group: "comments" });
 const Blank = createToken({ name: "Blank", pattern: /[ \t\r\n]+/, group: Lexer.SKIPPED, line_breaks: true });
 

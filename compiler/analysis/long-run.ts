@@ -20,7 +20,7 @@ import { stepBack, stepForth } from "./steps.ts";
 import { type KindOf, viewOf } from "./view.ts";
 
 /** Looks at moves that finding one limit may take, and steps. */
-const MOST_WORK = 1.5e9;
+const MOST_WORK = 6e8;
 const MOST_STEPS = 2e6;
 /** The masses have settled when they change by less than this in a period, all together. */
 const SETTLED = 4e-15;
@@ -37,7 +37,13 @@ export function longRunLaw(
   probabilities: DoubleDoubles,
 ): { readonly law: StateLaw } | { readonly reason: string } {
   const view = viewOf(automaton, kindOf);
-  const skeleton = findSkeleton(view, markTransitions(view), true, Int32Array.of(0), usableColumns(probabilities));
+  const skeleton = findSkeleton(
+    view,
+    markTransitions(view),
+    true,
+    Int32Array.of(0),
+    usableColumns(probabilities),
+  );
   // No class is solved here: any anchors do.
   const shape = shapeChain(skeleton, skeleton.classes.entry);
   const chain = fillChain(shape, probabilities);

@@ -54,7 +54,11 @@ function questionsOf(policy: Policy, options: Options): Questions {
 }
 
 function processOf(policy: Policy, text: string, option: string, fixed: boolean): ProcessUse {
-  return demandAnswer(askProcess(policy, text, option, fixed), `${option} ${text}`);
+  return demandAnswer(
+    askProcess(policy, text, option, fixed),
+    `${option} ${text}`,
+    fixed ? `${option} steady` : `${option} 'shifted(1.5)'`,
+  );
 }
 
 function signalOf(policy: Policy, name: string): SignalChoice {

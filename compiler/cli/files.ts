@@ -3,7 +3,19 @@
  * renamed, so that an interrupted or failing command leaves the old content or the new, never half of it.
  */
 import { randomBytes } from "node:crypto";
-import { closeSync, existsSync, fsyncSync, openSync, readSync, renameSync, rmSync, writeSync } from "node:fs";
+import {
+  accessSync,
+  closeSync,
+  constants,
+  existsSync,
+  fsyncSync,
+  openSync,
+  readSync,
+  renameSync,
+  rmSync,
+  statSync,
+  writeSync,
+} from "node:fs";
 import { basename, dirname, join } from "node:path";
 import { UsageError } from "./exit.ts";
 
@@ -12,16 +24,16 @@ const LARGEST_POLICY = 2 ** 20;
 
 export const STANDARD_INPUT = "-";
 
-/**
- * The text of a file, or of standard input for `-`; null when it is not UTF-8 text. A file that is missing, or longer than
- * `mostBytes`, is a usage error.
- */
-export function readText(path: string, mostBytes = LARGEST_POLICY): string | null {
+/** A file's text; where its bytes are not all UTF-8, that is said, and U+FFFD stands for those that are not. */
+export type FileText = { readonly text: string; readonly isText: boolean };
+
+/** The text of a file, or of standard input for `-`. One that is missing, or longer than `mostBytes`, is a usage error. */
+export function readText(path: string, mostBytes = LARGEST_POLICY): FileText {
   const bytes = readBytes(path, mostBytes);
   try {
-    return new TextDecoder("utf-8", { fatal: true, ignoreBOM: true }).decode(bytes);
+    return { text: new TextDecoder("utf-8", { fatal: true, ignoreBOM: true }).decode(bytes), isText: true };
   } catch {
-    return null;
+    return { text: new TextDecoder("utf-8", { ignoreBOM: true }).decode(bytes), isText: false };
   }
 }
 
@@ -69,14 +81,16 @@ function readChunk(file: number, chunk: Uint8Array): number {
   }
 }
 
-/** Writes a file whole or not at all. */
-export function writeWhole(path: string, content: string | Uint8Array): void {
+/** Writes a file whole or not at all, from one piece of text or several. */
+export function writeWhole(path: string, content: string | Iterable<string>): void {
   const temporary = join(dirname(path), `.${basename(path)}.${randomBytes(6).toString("hex")}.tmp`);
   try {
     const file = openSync(temporary, "wx");
     try {
-      const bytes = typeof content === "string" ? new TextEncoder().encode(content) : content;
-      for (let written = 0; written < bytes.length; ) written += writeSync(file, bytes, written);
+      for (const piece of typeof content === "string" ? [content] : content) {
+        const bytes = new TextEncoder().encode(piece);
+        for (let written = 0; written < bytes.length; ) written += writeSync(file, bytes, written);
+      }
       fsyncSync(file);
     } finally {
       closeSync(file);
@@ -84,8 +98,19 @@ export function writeWhole(path: string, content: string | Uint8Array): void {
     renameSync(temporary, path);
   } catch (thrown) {
     rmSync(temporary, { force: true });
+    throw ofSystem(thrown) ? new UsageError(`${path}: ${reasonOf(thrown)}`) : thrown;
+  }
+}
+
+/** Refuses a place where nothing can be written, before long work is done for it. */
+export function demandWritable(path: string): void {
+  try {
+    accessSync(dirname(path), constants.W_OK);
+    if (!existsSync(path) || !statSync(path).isDirectory()) return;
+  } catch (thrown) {
     throw new UsageError(`${path}: ${reasonOf(thrown)}`);
   }
+  throw new UsageError(`${path}: ${WORDS.EISDIR}`);
 }
 
 /** Refuses to overwrite unless told. */
@@ -93,17 +118,24 @@ export function demandAbsent(path: string, force: boolean): void {
   if (!force && existsSync(path)) throw new UsageError(`${path} exists already; --force overwrites it`);
 }
 
+/** Whether it is the system that refused, and no fault of ours. */
+function ofSystem(thrown: unknown): boolean {
+  return thrown instanceof Error && "errno" in thrown;
+}
+
+const WORDS: Readonly<Record<string, string>> = {
+  ENOENT: "there is no such file or folder",
+  EISDIR: "this is a folder, not a file",
+  EACCES: "permission denied",
+  EROFS: "nothing can be written on this device",
+  ENOTDIR: "a part of the path is not a folder",
+  ENOSPC: "no space left on the device",
+  ELOOP: "symbolic links lead in a circle",
+  ENAMETOOLONG: "the name is too long",
+};
+
 /** What the system says about a failed call, in words. */
 export function reasonOf(thrown: unknown): string {
-  const code = (thrown as NodeJS.ErrnoException).code ?? "";
-  const words: Record<string, string> = {
-    ENOENT: "there is no such file or folder",
-    EISDIR: "this is a folder, not a file",
-    EACCES: "permission denied",
-    ENOTDIR: "a part of the path is not a folder",
-    ENOSPC: "no space left on the device",
-    ELOOP: "symbolic links lead in a circle",
-    ENAMETOOLONG: "the name is too long",
-  };
-  return words[code] ?? (thrown instanceof Error ? thrown.message : String(thrown));
+  const { code = "" } = thrown as NodeJS.ErrnoException;
+  return WORDS[code] ?? (thrown instanceof Error ? thrown.message : String(thrown));
 }

@@ -15,9 +15,9 @@ export function runFormat(files: readonly string[], options: { verify?: true | u
 }
 
 function formatFile(file: string, verify: boolean): boolean {
-  const text = readText(file);
-  if (text === null) {
-    showDiagnostics([notText(file)], process.stderr);
+  const { text, isText } = readText(file);
+  if (!isText) {
+    showDiagnostics([notText(file, text)], process.stderr);
     return false;
   }
   const { tree, diagnostics } = parse(makeSource(file, text));

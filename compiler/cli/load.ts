@@ -21,8 +21,8 @@ const STANDARD_INPUT_NAME = "standard-input.tocsin";
 /** Reads and compiles a file; all it has to say is in the diagnostics. A file that is not there is a usage error. */
 export function load(file: string, options: LoadOptions): Compilation {
   const path = file === STANDARD_INPUT ? STANDARD_INPUT_NAME : file;
-  const text = readText(file);
-  if (text === null) return { diagnostics: [notText(path)] };
+  const { text, isText } = readText(file);
+  if (!isText) return { diagnostics: [notText(path, text)] };
   const lets = options.let ?? new Map<string, string>();
   return compile(text, {
     path,
@@ -43,19 +43,26 @@ export function loadMachine(file: string, options: LoadOptions): { policy: Polic
   throw new Stop(EXIT.findings);
 }
 
-/** Ends the command with what is wrong in a question typed at the command line. */
-export function demandAnswer<T>(outcome: { value?: T; diagnostics: readonly Diagnostic[] }, what: string): T {
+/** Ends the command with what is wrong in a question typed at the command line; `example` shows how it is asked. */
+export function demandAnswer<T>(
+  outcome: { value?: T; diagnostics: readonly Diagnostic[] },
+  what: string,
+  example: string,
+): T {
   const { value, diagnostics } = outcome;
   if (value !== undefined && !hasErrors(diagnostics)) return value;
-  const [first] = diagnostics;
-  throw new UsageError(
-    first ? `${what}: ${first.message}${first.hint ? ` (${first.hint})` : ""}` : `${what}: not understood`,
-  );
+  const first = diagnostics.find(({ severity }) => severity === "error");
+  // What is wrong with the form is told of the sentence it was put into, which nobody typed.
+  if (!first || first.code === "syntax")
+    throw new UsageError(`${what}: not understood; write it as in ${example}`);
+  throw new UsageError(`${what}: ${first.message}${first.hint ? ` (${first.hint})` : ""}`);
 }
 
-export function notText(path: string): Diagnostic {
-  const span = { source: makeSource(path, ""), start: 0, end: 0 };
-  return diagnose("not_text", span, `"${path}" is not UTF-8 text`, { hint: "save it as UTF-8" });
+/** What is said of a file whose bytes are not UTF-8, at the first that is not. */
+export function notText(path: string, text: string): Diagnostic {
+  const start = Math.max(0, text.indexOf("\uFFFD"));
+  const span = { source: makeSource(path, text), start, end: start + 1 };
+  return diagnose("not_text", span, "the file is not UTF-8 text from here on", { hint: "save it as UTF-8" });
 }
 
 /** A library's text, unless it is missing, is not text, or lies outside the policy's folder through a symbolic link. */
@@ -64,7 +71,8 @@ function readLibrary(policyPath: string, path: string): string | null {
     const folder = realpathSync(dirname(policyPath));
     const real = realpathSync(path);
     if (!real.startsWith(folder.endsWith(sep) ? folder : folder + sep)) return null;
-    return readText(path);
+    const { text, isText } = readText(path);
+    return isText ? text : null;
   } catch {
     return null;
   }

@@ -7,7 +7,7 @@ const coloured = (stream: NodeJS.WriteStream) =>
   stream.isTTY === true && !process.env.NO_COLOR && process.env.TERM !== "dumb";
 
 /** Colours for a stream: none unless it is a terminal and NO_COLOR is unset. */
-export function coloursFor(stream: NodeJS.WriteStream): ReturnType<typeof picocolors.createColors> {
+function coloursFor(stream: NodeJS.WriteStream): ReturnType<typeof picocolors.createColors> {
   return picocolors.createColors(coloured(stream));
 }
 
@@ -26,10 +26,13 @@ export function sayJson(value: unknown, indent = 2): void {
   process.stdout.write(`${JSON.stringify(value, null, indent)}\n`);
 }
 
-/** Shows diagnostics on a stream, each with its source line. */
+/** As many diagnostics of a file as anyone reads; what is no policy at all may have a hundred thousand. */
+export const MOST_SHOWN = 1000;
+
+/** Shows diagnostics on a stream, each with its source line and a blank line after it. */
 export function showDiagnostics(diagnostics: readonly Diagnostic[], stream: NodeJS.WriteStream): void {
   const colours = coloursFor(stream);
-  for (const diagnostic of diagnostics)
+  for (const diagnostic of diagnostics.slice(0, MOST_SHOWN))
     stream.write(
       `${renderDiagnostic(diagnostic, {
         paint: {
@@ -39,8 +42,10 @@ export function showDiagnostics(diagnostics: readonly Diagnostic[], stream: Node
           strong: colours.bold,
           quiet: colours.dim,
         },
-      })}\n`,
+      })}\n\n`,
     );
+  const more = diagnostics.length - MOST_SHOWN;
+  if (more > 0) stream.write(`and ${more.toLocaleString("en")} more\n\n`);
 }
 
 /** A text table: columns padded to their widest cell, numbers (`right`) flush right, two spaces between. */

@@ -85,20 +85,26 @@ function showText(policy: Policy, reading: Reading, { trial, refused, signals, b
   const what = policy.alphabets.map(({ name }, at) => {
     const value = reading.values?.[at];
     const letter = reading.letters[at];
-    return [name, value ?? (reading.values ? "missing" : null), letter]
+    return [name, value ?? (reading.values || letter === null ? "missing" : null), letter]
       .filter((part) => part !== null && part !== undefined)
+      .map(visible)
       .join(" ");
   });
   const place = [
-    ...(reading.stream === null ? [] : [reading.stream]),
+    ...(reading.stream === null ? [] : [visible(reading.stream)]),
     ...(refused ? [] : [`trial ${trial}`]),
     `row ${reading.row}`,
-    ...(reading.time === null ? [] : [reading.time]),
+    ...(reading.time === null ? [] : [visible(reading.time)]),
   ];
   const outcome = refused
     ? "refused: a value is missing"
     : `${signals.join(", ")} — ${because.map(reasonText).join("; ")}`;
   say([...place, ...what, outcome].join("  "));
+}
+
+/** What data say, on one line and without what acts on a terminal. */
+function visible(part: number | string): string {
+  return `${part}`.replace(/[\p{Cc}\u2028\u2029]/gu, "\uFFFD");
 }
 
 function reasonText({ rule, from, to, complete }: Reason): string {

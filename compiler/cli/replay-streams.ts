@@ -16,13 +16,13 @@ import { machineFile } from "../emit/machine-file.ts";
 import type { Machine } from "../machine/automaton.ts";
 import type { Policy } from "../policy.ts";
 import { EXIT, Stop, UsageError } from "./exit.ts";
-import { readText, writeWhole } from "./files.ts";
+import { demandWritable, readText, writeWhole } from "./files.ts";
 import { showDiagnostics } from "./output.ts";
 
 const STATE_FORMAT = "tocsin-replay";
 const STATE_VERSION = 1;
 
-/** A string cannot be much longer. */
+/** Bytes of a state file: a string cannot be much longer. */
 const LARGEST_STATE = 2 ** 28;
 
 /** Each stream keeps its last trials to explain its signals; this many fit a modest machine. */
@@ -61,20 +61,19 @@ export function makeStreams(policy: Policy, machine: Machine, options: Options):
     detectors.set(stream ?? "", fresh);
     return fresh;
   };
-  if (options.state !== undefined && existsSync(options.state))
-    subgroups = readState(options.state, opened, options, statistics.length, detectorOf);
+  if (options.state !== undefined) {
+    demandWritable(options.state);
+    if (existsSync(options.state))
+      subgroups = readState(options.state, opened, options, statistics.length, detectorOf);
+  }
   return {
     detectorOf,
     trials: (rows) =>
       options.subgroup === undefined ? rows : subgroupMeans(rows, options.subgroup, subgroups),
     unfinishedRows: () => [...subgroups.values()].reduce((sum, rows) => sum + rows.length, 0),
     save: () => {
-      if (options.state === undefined) return;
-      const streams = [...detectors].map(([name, detector]) => [name, detector.snapshot()]);
-      writeWhole(
-        options.state,
-        `${JSON.stringify({ ...headOf(opened, options), streams, subgroups: writeSubgroups(subgroups) })}\n`,
-      );
+      if (options.state !== undefined)
+        writeWhole(options.state, stateText(headOf(opened, options), detectors, subgroups, options.state));
     },
   };
 }
@@ -101,6 +100,31 @@ function headOf(machine: OpenMachine, { subgroup, stream }: Options) {
   };
 }
 
+/** The text of a state file, a stream a line; more than could be read again is refused. */
+function* stateText(
+  head: object,
+  detectors: ReadonlyMap<string, Detector>,
+  subgroups: OpenSubgroups,
+  path: string,
+): Generator<string, void, void> {
+  const rest = JSON.stringify({ ...head, subgroups: writeSubgroups(subgroups) });
+  let size = 2 * rest.length;
+  yield `${rest.slice(0, -1)},"streams":[`;
+  let separator = "\n";
+  for (const [name, detector] of detectors) {
+    const line = `${separator}${JSON.stringify([name, detector.snapshot()])}`;
+    // Everything but names is ASCII; a name takes at most three bytes a unit.
+    size += line.length + 2 * name.length;
+    if (size > LARGEST_STATE)
+      throw new UsageError(
+        `${path}: the state of ${detectors.size} streams is too large to be kept in one file`,
+      );
+    yield line;
+    separator = ",\n";
+  }
+  yield "\n]}\n";
+}
+
 /** Restores the detectors, and returns the subgroups that were not full. */
 function readState(
   path: string,
@@ -116,9 +140,12 @@ function readState(
   const { streams } = state;
   const subgroups = readSubgroups(state.subgroups, statistics, options.subgroup ?? 1);
   if (!Array.isArray(streams) || !subgroups) throw new UsageError(`${path}: this is not a whole state file`);
+  const seen = new Set<unknown>();
   for (const entry of streams as unknown[]) {
     const [name, snapshot] = Array.isArray(entry) ? (entry as unknown[]) : [];
-    if (typeof name !== "string") throw new UsageError(`${path}: this is not a whole state file`);
+    if (typeof name !== "string" || seen.has(name) || (options.stream === undefined && name !== ""))
+      throw new UsageError(`${path}: this is not a whole state file`);
+    seen.add(name);
     const [problem] = detectorOf(name).restore(snapshot);
     if (problem) throw new UsageError(`${path}: the state of stream "${name}" is refused: ${problem.what}`);
   }
@@ -126,9 +153,9 @@ function readState(
 }
 
 function parseState(path: string): Record<string, unknown> {
-  const text = readText(path, LARGEST_STATE);
+  const { text } = readText(path, LARGEST_STATE);
   try {
-    const state: unknown = JSON.parse(text ?? "");
+    const state: unknown = JSON.parse(text);
     if (typeof state === "object" && state !== null && !Array.isArray(state))
       return state as Record<string, unknown>;
   } catch {

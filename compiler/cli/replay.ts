@@ -28,25 +28,36 @@ type Options = LoadOptions & {
   state?: string | undefined;
 };
 
+const LETTERS_EXAMPLE =
+  "--letters 'high mid 2 high', or '(high, open) ? 2 (mid, open)' for several statistics";
+
 /** Replays data or trials and reports every signal; ends with a summary. */
 export async function runReplay(file: string, data: string | undefined, options: Options): Promise<void> {
+  demandOneSource(file, data, options);
   const { policy, machine } = loadMachine(file, options);
   const streams = makeStreams(policy, machine, options);
   const report = reporterFor(policy, options);
-  if (options.letters !== undefined) {
-    if (data !== undefined) throw new UsageError("data and --letters exclude each other");
-    replayLetters(policy, streams, options.letters, report);
-  } else {
-    if (file === STANDARD_INPUT && (data ?? STANDARD_INPUT) === STANDARD_INPUT)
-      throw new UsageError("the policy and the data cannot both come from standard input");
-    await replayData(policy, streams, data ?? STANDARD_INPUT, report, options);
-  }
+  if (options.letters !== undefined) replayLetters(policy, streams, options.letters, report);
+  else await replayData(policy, streams, data ?? STANDARD_INPUT, report, options);
   streams.save();
   report.end(streams.unfinishedRows());
 }
 
+/** Trials come from data or are written out, and standard input is read once. */
+function demandOneSource(file: string, data: string | undefined, options: Options): void {
+  const { letters, column, subgroup, time, stream } = options;
+  if (letters === undefined) {
+    if (file === STANDARD_INPUT && (data ?? STANDARD_INPUT) === STANDARD_INPUT)
+      throw new UsageError("the policy and the data cannot both come from standard input");
+    return;
+  }
+  if (data !== undefined) throw new UsageError(`--letters stands instead of data, and ${data} is given too`);
+  const ofData = Object.entries({ column, subgroup, time, stream }).find(([, value]) => value !== undefined);
+  if (ofData) throw new UsageError(`--${ofData[0]} is for data, and --letters stands instead of them`);
+}
+
 function replayLetters(policy: Policy, streams: Streams, text: string, report: Reporter): void {
-  const trials = demandAnswer(askTrials(policy, text, "--letters"), "--letters");
+  const trials = demandAnswer(askTrials(policy, text, "--letters"), "--letters", LETTERS_EXAMPLE);
   const detector = streams.detectorOf(null);
   trials.forEach(({ symbol }, index) => {
     const letters = symbol === null ? policy.alphabets.map(() => -1) : lettersOf(policy, symbol);

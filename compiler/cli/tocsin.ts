@@ -27,9 +27,10 @@ async function main(arguments_: readonly string[]): Promise<number> {
 }
 
 // A reader that has seen enough (`tocsin … | head`) closes the pipe; that is no error.
-process.stdout.on("error", (error: NodeJS.ErrnoException) => {
-  if (error.code === "EPIPE") process.exit(EXIT.clean);
-  throw error;
-});
+for (const stream of [process.stdout, process.stderr])
+  stream.on("error", (error: NodeJS.ErrnoException) => {
+    if (error.code === "EPIPE") process.exit(EXIT.clean);
+    throw error;
+  });
 
 process.exitCode = await main(process.argv.slice(2));

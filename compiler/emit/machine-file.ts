@@ -53,7 +53,7 @@ export function machineFile(policy: Policy, machine: Machine): Outcome<MachineFi
 }
 
 /** SHA-256 of the canonical text of the policy and, after it, of its libraries in the order they were reached. */
-export function sourceHash(policy: Policy): string {
+function sourceHash(policy: Policy): string {
   return hashOf(policy.sources.map((source) => print(parse(source).tree)).join("\n"));
 }
 

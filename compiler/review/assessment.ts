@@ -191,7 +191,7 @@ function conditionNames(policy: Policy, signal: SignalChoice): string[] {
 }
 
 /** The name of a signal, or any. */
-export function nameOf(policy: Policy, signal: SignalChoice): string {
+function nameOf(policy: Policy, signal: SignalChoice): string {
   return signal === "any" ? "any" : (policy.signals[signal]?.name ?? "");
 }
 

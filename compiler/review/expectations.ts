@@ -87,7 +87,7 @@ function letterWords(policy: Policy, trial: ExpectedTrial): string {
 }
 
 /** The names of the signals in a bit set. */
-export function namesOf(policy: Policy, mask: number): string {
+function namesOf(policy: Policy, mask: number): string {
   const names = policy.signals.flatMap((signal, index) => ((mask >>> index) & 1 ? [signal.name] : []));
   return names.length === 0 ? "no signal" : names.join(" and ");
 }

@@ -123,12 +123,12 @@ function percent(quantity: Require["requirement"]["value"]): Require["requiremen
 }
 
 /** A value as people read it: six digits, or infinite. */
-export function figure(value: number): string {
+function figure(value: number): string {
   return Number.isFinite(value) ? `${Number(value.toPrecision(6))}` : "infinite";
 }
 
 /** `delta = 0.25, scale = 1`. */
-export function pointWords(policy: Policy, point: Point | null): string {
+function pointWords(policy: Policy, point: Point | null): string {
   if (!point) return "";
   const parameters = policy.processes[point.process]?.parameters ?? [];
   return parameters

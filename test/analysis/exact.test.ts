@@ -3,7 +3,9 @@
 import Fraction from "fraction.js";
 import { create, fractionDependencies, lusolveDependencies } from "mathjs";
 import { describe, expect, test } from "vitest";
+import { exactColumns, exactLetters } from "../../compiler/analysis/exact-columns.ts";
 import { prepareRunLengths } from "../../compiler/analysis/run-lengths.ts";
+import type { LetterModel } from "../../compiler/policy.ts";
 import { exactMoments } from "../oracle/exact-chain.ts";
 import {
   plain,
@@ -67,6 +69,30 @@ describe("exact means", () => {
     };
     expect(exactLengths(trap, [1n, 1n]).exactMean()).toBeNull();
     expect(exactLengths(scan(4, 40), [1n, 99n]).exactMean()).toBeNull();
+  });
+});
+
+describe("exact column probabilities", () => {
+  const model = (...texts: string[]): LetterModel => ({
+    kind: "mass",
+    probabilities: texts.map((text) => ({ value: new Fraction(text), radius: 0 })),
+  });
+
+  test("products over the alphabets, the first varying slowest, added up by column", () => {
+    const laws = [exactLetters(model("1/3", "2/3")), exactLetters(model("0.1", "0.2", "0.7"))];
+    const columns = exactColumns(laws, Int32Array.of(0, 1, 1, 2, 0, 1), 3)!;
+    // Column 0: 1/3 of 0.1 and 2/3 of 0.2; column 2: 2/3 of 0.1.
+    expect(columns.map((column) => column.toFraction())).toEqual(["1/6", "23/30", "1/15"]);
+  });
+
+  test("none where a law is not exact", () => {
+    const inexact: LetterModel = {
+      kind: "mass",
+      probabilities: [{ value: new Fraction("0.3"), radius: 1e-20 }],
+    };
+    expect(exactLetters(inexact)).toBeNull();
+    expect(exactColumns([exactLetters(model("1")), null], Int32Array.of(0), 1)).toBeNull();
+    expect(exactColumns([exactLetters(model("1"))], new Int32Array(5000), 1)).toBeNull();
   });
 });
 

@@ -10,6 +10,7 @@ import {
   usableColumns,
 } from "../../compiler/analysis/chain.ts";
 import { meanSteps } from "../../compiler/analysis/mean.ts";
+import { prepareRunLengths } from "../../compiler/analysis/run-lengths.ts";
 import { planShape, prepareSystem, type SolverOptions } from "../../compiler/analysis/solver.ts";
 import { TO_THE_LAST } from "../../compiler/analysis/sweeps.ts";
 import { stepVariances } from "../../compiler/analysis/variance.ts";
@@ -72,4 +73,31 @@ describe.each([
         expect(relativeError(variances[place]!, variance), `${toNumber(variance)}`).toBeLessThan(1e-10);
       }
   });
+});
+
+test("equal questions have equal answers, to the last bit, whatever was asked before", () => {
+  const random = randomNumbers(61);
+  for (let i = 0; i < 40; i++) {
+    const { automaton, weights } = randomMachine(random, 9, random());
+    const other = weights.map((weight, column) => (column === 1 ? weight * 7n : weight));
+    const solver = prepareRunLengths(automaton, () => true);
+    solver.under(probabilitiesOf(other)).standardDeviation();
+    const [warm, fresh] = [solver, prepareRunLengths(automaton, () => true)].map((one) =>
+      one.under(probabilitiesOf(weights)),
+    );
+    expect(warm!.mean()).toBe(fresh!.mean());
+    expect(warm!.relativeErrorBound()).toBe(fresh!.relativeErrorBound());
+    expect(warm!.standardDeviation()).toBe(fresh!.standardDeviation());
+    expect(warm!.signalled(50)).toEqual(fresh!.signalled(50));
+  }
+});
+
+test("a mistake of ours is said to be one", () => {
+  const { automaton } = randomMachine(randomNumbers(62), 5, 0);
+  const short = { high: new Float64Array(1), low: new Float64Array(1) };
+  expect(() => prepareRunLengths(automaton, () => true).under(short)).toThrow(/bug in Tocsin/);
+  const none = new Uint8Array(1);
+  expect(() => findSkeleton(automaton, none, true, Int32Array.of(0), Int32Array.of(0))).toThrow(
+    /bug in Tocsin/,
+  );
 });

@@ -134,8 +134,8 @@ export function law<S>(walk: Walk<S>, chances: Readonly<Record<string, number>>)
   return found;
 }
 
-function workOut<S>(walk: Walk<S>, chances: Readonly<Record<string, number>>): Law {
-  const rows = explore(walk, Object.keys(chances));
+/** The chances of moving from state to state, and of signalling from each. */
+function chainOf(rows: readonly Moves[], chances: Readonly<Record<string, number>>) {
   const matrix = rows.map((moves) => {
     const row: number[] = rows.map(() => 0);
     for (const { letter, to } of moves) if (to !== null) row[to]! += chances[letter]!;
@@ -144,9 +144,21 @@ function workOut<S>(walk: Walk<S>, chances: Readonly<Record<string, number>>): L
   const exits = rows.map((moves) =>
     moves.reduce((sum, { letter, to }) => sum + (to === null ? chances[letter]! : 0), 0),
   );
-  const [means] = solve(matrix, exits, [rows.map(() => 1)]);
+  return { matrix, exits };
+}
+
+/** The mean run length from each state. */
+function meansOf(rows: readonly Moves[], chances: Readonly<Record<string, number>>): readonly number[] {
+  const { matrix, exits } = chainOf(rows, chances);
+  return solve(matrix, exits, [rows.map(() => 1)])[0]!;
+}
+
+function workOut<S>(walk: Walk<S>, chances: Readonly<Record<string, number>>): Law {
+  const rows = explore(walk, Object.keys(chances));
+  const { matrix, exits } = chainOf(rows, chances);
+  const means = meansOf(rows, chances);
   const later = rows.map((moves) =>
-    moves.reduce((sum, { letter, to }) => sum + (to === null ? 0 : chances[letter]! * means![to]!), 0),
+    moves.reduce((sum, { letter, to }) => sum + (to === null ? 0 : chances[letter]! * means[to]!), 0),
   );
   const rules = [...new Set(rows.flatMap((moves) => moves.flatMap(({ raised }) => raised)))];
   const attributed = rules.map((rule) =>
@@ -155,13 +167,36 @@ function workOut<S>(walk: Walk<S>, chances: Readonly<Record<string, number>>): L
     ),
   );
   const [squares, ...first] = solve(matrix, exits, [later.map((value) => 1 + 2 * value), ...attributed]);
-  const arl = means![0]!;
+  const arl = means[0]!;
   return {
     arl,
     sdrl: Math.sqrt(squares![0]! - arl * arl),
     first: Object.fromEntries(rules.map((rule, i) => [rule, first[i]![0]!])),
     ...distribution(rows, chances),
   };
+}
+
+/**
+ * The mean run length under `after` from the long-run state under `before`, given that the signal has not been raised: the law of
+ * the states is stepped under `before` and scaled up to 1 until it no longer changes.
+ */
+export function settledArl<S>(
+  walk: Walk<S>,
+  before: Readonly<Record<string, number>>,
+  after: Readonly<Record<string, number>>,
+): number {
+  const rows = explore(walk, Object.keys(before));
+  const means = meansOf(rows, after);
+  let places: number[] = rows.map((_, i) => (i === 0 ? 1 : 0));
+  for (let n = 0; n < 5000; n++) {
+    const next: number[] = rows.map(() => 0);
+    rows.forEach((moves, i) => {
+      for (const { letter, to } of moves) if (to !== null) next[to]! += places[i]! * before[letter]!;
+    });
+    const left = next.reduce((sum, place) => sum + place, 0);
+    places = next.map((place) => place / left);
+  }
+  return places.reduce((sum, place, i) => sum + place * means[i]!, 0);
 }
 
 /** Steps the chain forward; beyond `longest` trials the hazard has long settled and the rest is geometric. */

@@ -249,7 +249,7 @@ function kind(text: string, always: Record<string, fc.Arbitrary<unknown>>, ...mo
     .map(([parts, ...others]) => Object.assign({ kind: text, span }, parts, ...others) as object);
 }
 
-export const declaration = fc.oneof(
+const declaration = fc.oneof(
   kind("policy", { name }, optional("title", quoted)),
   kind("let", { name, value: expression }),
   zones,

@@ -1,5 +1,6 @@
 /** A water works: a warning that an action wipes out, and the quiet that the action begins. */
-import { type Chances, chain, type Example, exact, move, normalBetween } from "../example.ts";
+import { byHand, type Chances, chain, type Example, exact, move, normalBetween } from "../example.ts";
+import { settledArl, type Walk } from "../independent.ts";
 
 export function filterTurbidity(): Example {
   type Act = { watching: boolean; count: number };
@@ -28,6 +29,22 @@ export function filterTurbidity(): Example {
   };
   const page = ({ raised, clean }: Chances): number =>
     (1 - raised! ** 4) / (1 - raised! - clean! * (1 - raised! ** 4));
+  const warn: Walk<State> = {
+    start,
+    step: (state, letter) => {
+      const { next, pair, spike, lasting } = step(state, letter);
+      return move(spike || lasting ? quiet : next, [pair]);
+    },
+  };
+  const act: Walk<State> = {
+    start,
+    step: (state, letter) => {
+      const { next, spike, lasting } = step(state, letter);
+      return move({ ...next, pair: 0 }, [spike, lasting]);
+    },
+  };
+  const [usual, storm] = [chances(0.1, 0.5), chances(0.4, 0.5)];
+  const settled = `${byHand("waterworks")}, stepped under \`usual\` until its law no longer changes`;
   // The run that ends in `turbid` is a spike already, so only runs of `raised` count: Page's rule with k = 4.
   const source =
     "Page's warning-line rule, (1 − bᵏ)/(1 − b − a(1 − bᵏ)) with a = P(clean), b = P(raised), k = 4, derived above; the rule is Page (1955), Control charts with warning lines, Biometrika 42:243–257";
@@ -36,20 +53,8 @@ export function filterTurbidity(): Example {
     policy: "filter_turbidity.tocsin",
     chances: (process, at) => (process === "usual" ? chances(0.1, 0.5) : chances(at.level!, at.spread!)),
     walks: {
-      warn: chain<State>({
-        start,
-        step: (state, letter) => {
-          const { next, pair, spike, lasting } = step(state, letter);
-          return move(spike || lasting ? quiet : next, [pair]);
-        },
-      }),
-      act: chain<State>({
-        start,
-        step: (state, letter) => {
-          const { next, spike, lasting } = step(state, letter);
-          return move({ ...next, pair: 0 }, [spike, lasting]);
-        },
-      }),
+      warn: chain(warn),
+      act: chain(act),
       any: chain<State>({
         start,
         step: (state, letter) => {
@@ -59,8 +64,10 @@ export function filterTurbidity(): Example {
       }),
     },
     figures: [
-      exact("arl(act, usual)", page(chances(0.1, 0.5)), source),
-      exact("arl(act, storm(0.4, 0.5))", page(chances(0.4, 0.5)), source),
+      exact("arl(act, usual)", page(usual), source),
+      exact("arl(act, storm(0.4, 0.5))", page(storm), source),
+      exact("arl(warn, storm(0.4, 0.5) after usual)", settledArl(warn, usual, storm), settled),
+      exact("arl(act, storm(0.4, 0.5) after usual)", settledArl(act, usual, storm), settled),
     ],
   };
 }
