@@ -4,13 +4,14 @@
  * the tokens told of here and those that may look wrong because of them: at these the parser's opinion is worth nothing.
  * Linear in the length of the text.
  */
-import { type IToken, Lexer } from "chevrotain";
+import type { IToken } from "chevrotain";
 import type { Diagnostic } from "./diagnostic.ts";
+import { scan } from "./scan.ts";
 import { beginsDeclaration, startsLine } from "./slices.ts";
 import type { Source } from "./source.ts";
 import { tokenAt, tokenSpan } from "./syntax-node.ts";
 import { foreignName, garbage, hiddenCharacters, mistakes, otherComment } from "./text-mistakes.ts";
-import { BadNumber, Name, OpenText, reserved, tokenOfWord, vocabulary, Whole } from "./tokens.ts";
+import { BadNumber, Name, OpenText, reserved, tokenOfWord, Whole } from "./tokens.ts";
 import type { Comment } from "./tree.ts";
 
 export type Lexed = {
@@ -26,11 +27,8 @@ export const mostMistakes = 1000;
 /** What has been told so far. */
 type Findings = { readonly diagnostics: Diagnostic[]; readonly suspect: Set<IToken> };
 
-let lexer: Lexer | undefined;
-
 export function lex(source: Source): Lexed {
-  lexer ??= new Lexer(vocabulary, { positionTracking: "onlyOffset" });
-  const { tokens: read, errors: unread, groups } = lexer.tokenize(source.text);
+  const { tokens: read, errors: unread, groups } = scan(source.text);
   const errors = unread.slice(0, mostMistakes + 1);
   const findings: Findings = { diagnostics: [], suspect: new Set() };
   const tokens = findMistakes(

@@ -79,7 +79,6 @@ export function isDeclarationWord(word: string): word is DeclarationWord {
 
 export type DeclarationWord = (typeof declarationWords)[number];
 export type ReservedWord = DeclarationWord | (typeof innerWords)[number];
-type PlacedWord = (typeof placedWords)[number];
 
 /** Every word that cannot be a name. */
 export const reservedWords: readonly ReservedWord[] = [...declarationWords, ...innerWords];

@@ -29,10 +29,10 @@ export type CycleSolution = {
 /** Values below this are not certified: their products would lose digits. */
 export const SMALLEST = 1e-270;
 /** Covers the rounding of the bounds' own arithmetic. */
-export const OUTWARD = 1 + 1e-9;
+const OUTWARD = 1 + 1e-9;
 
 /** The relative error of evaluating one residual, in units of the sizes added. */
-export function residualError(chain: Chain): number {
+function residualError(chain: Chain): number {
   return (chain.shape.widestRow + 4) * UNIT * OUTWARD;
 }
 

@@ -41,7 +41,7 @@ export type Factors = {
 };
 
 /** Larger classes are left to the iteration: the table of slots is dense. */
-export const MOST_PLACES = 2200;
+const MOST_PLACES = 2200;
 /** Products a run may take for each move of the class, and in any case; beyond, sweeps are cheaper. */
 const MOST_PRODUCTS_A_MOVE = 25;
 const ALWAYS_ALLOWED = 30_000;

@@ -26,7 +26,7 @@ export type Means = {
 /** A class is refined when its own bound is larger than this. */
 const REFINE_ABOVE = 4e-13;
 /** What a printed bound may be at most before everything is refined. */
-export const LARGEST_BOUND = 1e-12;
+const LARGEST_BOUND = 1e-12;
 
 /**
  * The means of all places, or with `needed` (a place) of that one and all it takes: the other places of the last class are

@@ -22,6 +22,7 @@ const MARGIN = 1e-12;
 /** Bits of a number times additions in an exact sum: about a second. */
 const MOST_WORK = 1e10;
 
+/** The quantile of a count law for exact parameters and 0 < p < 1; the name says which exact sums there are. */
 export function countQuantile(
   name: string,
   law: CountLaw,
@@ -45,6 +46,7 @@ export function countQuantile(
     if (isDown(middle)) high = middle;
     else low = middle;
   }
+  if (high >= Number.MAX_SAFE_INTEGER) return { refused: "the quantile is too large to be found" };
   if (open !== null) return { refused: `P(X > ${open}) comes too close to ${doubleOf(aim)} to tell` };
   return exact(BigInt(high));
 }

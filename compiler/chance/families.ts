@@ -77,8 +77,8 @@ const CONTINUOUS: Readonly<Record<string, Row>> = {
   },
   lognormal: {
     parameters: [
-      parameter("log_mean", "the mean of the logarithm", "any"),
-      parameter("log_sd", "the standard deviation of the logarithm", "positive"),
+      parameter("log_mean", "the mean of the logarithm", "exponent"),
+      parameter("log_sd", "the standard deviation of the logarithm", "moderate"),
     ],
     law: (logMean, logSd) => lognormalLaw(logMean!, logSd!),
   },
@@ -135,7 +135,7 @@ const COUNTS: Readonly<Record<string, Row>> = {
     },
   },
   negative_binomial: {
-    parameters: [parameter("r", "the number r", "moderate"), CHANCE],
+    parameters: [parameter("r", "the number r", "moderate"), { ...CHANCE, demand: "sizeableChance" }],
     law: (r, p) => {
       const [success, failure] = chances(p!);
       return failure.high === 0 ? certainCount(0) : negativeBinomialLaw(dd(r!), success, failure);

@@ -61,6 +61,9 @@ export function medianAtZero(above: Fraction): Fraction | null {
   return above.n === 1n && above.d === 2n ? above.sub(above) : null;
 }
 
+/** Places are kept where double-double arithmetic does not overflow. */
+const FARTHEST = 1e280;
+
 /** The share of a tail that a difference must keep to be taken as it is; below, two bits would be lost. */
 const KEPT = 0.25;
 
@@ -110,10 +113,11 @@ function outward(law: StandardLaw, from: DoubleDouble, width: number, direction:
   return core * integrate(node, range, 1);
 }
 
-/** (cut − location)/scale, exactly, then rounded to 32 digits. */
+/** (cut − location)/scale, exactly, then rounded to 32 digits; at most `FARTHEST` from 0. */
 function standardised(cut: Fraction, location: Fraction, scale: Fraction): DoubleDouble {
   const top = cut.s * cut.n * location.d - location.s * location.n * cut.d;
-  return doubleDoubleOfRatio(top * scale.d, cut.d * location.d * scale.n);
+  const place = doubleDoubleOfRatio(top * scale.d, cut.d * location.d * scale.n);
+  return Math.abs(place.high) <= FARTHEST ? place : dd.pair(Math.sign(place.high) * FARTHEST);
 }
 
 /** A standard law moved and stretched: the statistic is location + scale·standard, scale above 0. */

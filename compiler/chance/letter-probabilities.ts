@@ -49,7 +49,7 @@ export function letterProbabilities(alphabet: Alphabet, model: LetterModel): Cha
 }
 
 /** The chance of each zone, from the lowest to the highest. */
-export function zoneProbabilities(alphabet: Alphabet, law: Law): number[] {
+function zoneProbabilities(alphabet: Alphabet, law: Law): number[] {
   if (alphabet.kind !== "zones") throw new RangeError(`"${alphabet.name}" has no zones`);
   const bounds = alphabet.cuts.map(({ at, owner }) => law.tails(law.place(at.value, owner)));
   const [first, last] = [bounds[0], bounds.at(-1)];

@@ -4,11 +4,12 @@
  */
 import Fraction from "fraction.js";
 import type { Quantity } from "../policy.ts";
-import { compareQuantities, exact, toDouble } from "./quantity.ts";
+import { compareQuantities, exact, negate, toDouble } from "./quantity.ts";
 
 /** The range in which tails are computed (and tested) with the accuracy that is stated. */
 const SMALLEST = exact(new Fraction(1n, 1_000_000n));
 const LARGEST = exact(1_000_000_000n);
+const BILLIONTH = exact(new Fraction(1n, 1_000_000_000n));
 const MILLION = exact(1_000_000n);
 const ZERO = exact(0n);
 const ONE = exact(1n);
@@ -16,6 +17,8 @@ const ONE = exact(1n);
 export type Demand =
   | "any"
   | "positive"
+  /** From -1e6 to 1e6. */
+  | "exponent"
   /** From 1e-6 to 1e9. */
   | "moderate"
   /** From 0 to 1e6. */
@@ -25,7 +28,9 @@ export type Demand =
   /** From 0 to 1. */
   | "chance"
   /** Above 0, up to 1. */
-  | "positiveChance";
+  | "positiveChance"
+  /** From 1e-9 to 1. */
+  | "sizeableChance";
 
 export type Parameter = {
   /** As the reference of the language calls it. */
@@ -49,6 +54,8 @@ function unmet(demand: Demand, q: Quantity): string | null {
       return null;
     case "positive":
       return positive ? null : "above 0";
+    case "exponent":
+      return isBetween(negate(MILLION), q, MILLION) ? null : "from -1e6 to 1e6";
     case "moderate":
       if (!positive) return "above 0";
       return isBetween(SMALLEST, q, LARGEST) ? null : "from 1e-6 to 1e9";
@@ -62,6 +69,9 @@ function unmet(demand: Demand, q: Quantity): string | null {
       return isBetween(ZERO, q, ONE) ? null : "from 0 to 1";
     case "positiveChance":
       return positive && isBetween(ZERO, q, ONE) ? null : "above 0 and at most 1";
+    case "sizeableChance":
+      if (!positive || !isBetween(ZERO, q, ONE)) return "above 0 and at most 1";
+      return isBetween(BILLIONTH, q, ONE) ? null : "at least 1e-9";
     default:
       return demand satisfies never;
   }

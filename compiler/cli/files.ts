@@ -83,22 +83,26 @@ function readChunk(file: number, chunk: Uint8Array): number {
 
 /** Writes a file whole or not at all, from one piece of text or several. */
 export function writeWhole(path: string, content: string | Iterable<string>): void {
-  const temporary = join(dirname(path), `.${basename(path)}.${randomBytes(6).toString("hex")}.tmp`);
+  const temporary = join(dirname(path), `.tocsin-${randomBytes(8).toString("hex")}.tmp`);
   try {
-    const file = openSync(temporary, "wx");
-    try {
-      for (const piece of typeof content === "string" ? [content] : content) {
-        const bytes = new TextEncoder().encode(piece);
-        for (let written = 0; written < bytes.length; ) written += writeSync(file, bytes, written);
-      }
-      fsyncSync(file);
-    } finally {
-      closeSync(file);
-    }
+    writeNew(temporary, typeof content === "string" ? [content] : content);
     renameSync(temporary, path);
   } catch (thrown) {
-    rmSync(temporary, { force: true });
+    if (existsSync(temporary)) rmSync(temporary);
     throw ofSystem(thrown) ? new UsageError(`${path}: ${reasonOf(thrown)}`) : thrown;
+  }
+}
+
+function writeNew(path: string, pieces: Iterable<string>): void {
+  const file = openSync(path, "wx");
+  try {
+    for (const piece of pieces) {
+      const bytes = new TextEncoder().encode(piece);
+      for (let written = 0; written < bytes.length; ) written += writeSync(file, bytes, written);
+    }
+    fsyncSync(file);
+  } finally {
+    closeSync(file);
   }
 }
 

@@ -137,6 +137,17 @@ describe("identities", () => {
   });
 });
 
+describe("numbers no double can hold", () => {
+  test("a scale of 1e-400 and cuts 1e-390 away are decided, not NaN", () => {
+    for (const family of ["normal", "laplace", "logistic"]) {
+      const found = highs(family, ["0", "1e-400"], ["-2e-390", "-1e-390", "0", "1e-390", "2e-390"]);
+      expect(found, family).toEqual([0, 0, 0.5, 0.5, 0, 0]);
+    }
+    expect(highs("exponential", ["1e-400"], ["1e-401", "1e-390", "1e-380"])[2]).toBe(0);
+    expect(highs("gamma", ["2", "1e400"], ["1e399", "1e401"])[1]).toBeCloseTo(0.994821760612168, 14);
+  });
+});
+
 describe("counts", () => {
   /** C(n, k) p^k (1−p)^(n−k), exactly. */
   function binomialMass(n: number, k: number, p: Fraction): Fraction {

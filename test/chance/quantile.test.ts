@@ -215,6 +215,7 @@ describe("refusals", () => {
     ["normal", ["0", "1"], "1", "the chance must be above 0 and below 1"],
     ["normal", ["0", "1"], "1e-301", "the chance must not be nearer than 1e-300 to 0 or 1"],
     ["student", ["0.5", "0", "1"], "1e-290", "the quantile lies too far out to be found"],
+    ["geometric", ["1e-20"], "1e-9", "the quantile is too large to be found"],
     ["signed_rank", ["10"], "0.1", "quantiles of signed_rank are not built in this version"],
   ] as const)("%s(%j) at %s", (name, parameters, p, message) => {
     expect(refusal(upperQuantile, name, parameters, p)).toBe(message);
