@@ -50,7 +50,7 @@ export type Law = {
   steps: number;
   /** The step from which on the tail holds; -1 while the bracket is open. */
   closed: number;
-  readonly mostSteps: number;
+  readonly patience: number;
 };
 
 /** Looks at moves one law may take. */
@@ -63,17 +63,22 @@ const STRIDE = 8;
 const TINY = 1e-280;
 const NO_BRACKET: Bracket = { low: 0, high: 0, shareLow: 1, shareHigh: 1 };
 
-/** The law of T from `start`. `hopeless` marks the places from which no exit can be reached. */
-export function beginLaw(chain: Chain, start: StartLaw, hopeless: Uint8Array): Law {
+/**
+ * The law of T from `start`. `hopeless` marks the places from which no exit can be reached; `patience` is the number of steps
+ * after which the bracket is taken as it is, open or not.
+ */
+export function beginLaw(
+  chain: Chain,
+  start: StartLaw,
+  hopeless: Uint8Array,
+  patience: number = patienceFor(chain),
+): Law {
   const { size } = chain.shape;
   const { period, phaseOf } = findPhases(chain.shape, start.places);
   const values = new Float64Array(2 * size);
   const leaky = hopeless.includes(1);
   for (let i = 0; i < size; i++) values[2 * i] = hopeless[i] === 1 ? 0 : 1;
   const strands = splitStart(start, phaseOf);
-  // Small chains have their powers to fall back on.
-  const most = size <= MOST_PLACES ? STEPS_OF_SMALL : MOST_STEPS;
-  const mostSteps = Math.min(most, Math.max(2000, Math.floor(MOST_WORK / (chain.move.length + size))));
   const law: Law = {
     chain,
     period,
@@ -84,12 +89,18 @@ export function beginLaw(chain: Chain, start: StartLaw, hopeless: Uint8Array): L
     leak: null,
     steps: 0,
     closed: -1,
-    mostSteps,
+    patience,
   };
   const exits = withinPeriod(chain, chain.mark, period, strands, true);
   for (let i = 0; i < size; i++) values[2 * i + 1] = exits[i]!;
   if (leaky) law.leak = withinPeriod(chain, leaving(chain, hopeless), period, strands, false);
   return law;
+}
+
+function patienceFor({ move, shape }: Chain): number {
+  // Small chains have their powers to fall back on.
+  const most = shape.size <= MOST_PLACES ? STEPS_OF_SMALL : MOST_STEPS;
+  return Math.min(most, Math.max(2000, Math.floor(MOST_WORK / (move.length + shape.size))));
 }
 
 /** The start law by phase. */
@@ -226,7 +237,7 @@ function close(law: Law): void {
 function reach(law: Law, n: number): void {
   while (law.closed < 0 && law.steps <= n) {
     const look = law.steps % Math.max(STRIDE, law.period) === 0;
-    if (law.steps >= law.mostSteps || (look && isClosed(law, findBrackets(law)))) close(law);
+    if (law.steps >= law.patience || (look && isClosed(law, findBrackets(law)))) close(law);
     else advance(law);
   }
 }

@@ -16,7 +16,7 @@ import {
   statSync,
   writeSync,
 } from "node:fs";
-import { basename, dirname, join } from "node:path";
+import { dirname, join } from "node:path";
 import { UsageError } from "./exit.ts";
 
 /** Larger than any policy a person writes; protects time and memory. */

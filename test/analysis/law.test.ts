@@ -2,6 +2,8 @@
 
 import Fraction from "fraction.js";
 import { describe, expect, test } from "vitest";
+import { fillChain, findSkeleton, markTransitions, shapeChain, usableColumns } from "../../compiler/analysis/chain.ts";
+import { beginLaw, exitedWithin } from "../../compiler/analysis/law.ts";
 import { prepareRunLengths, type RunLengths } from "../../compiler/analysis/run-lengths.ts";
 import type { Automaton } from "../../compiler/machine/automaton.ts";
 import { exactLaw, type Ratio, ratioOfDouble, toNumber } from "../oracle/exact-chain.ts";
@@ -85,6 +87,34 @@ describe("against exact path counts", () => {
       probabilitiesOf(weights),
     );
     expectLaw(lengths, law, law.keys(), 1e-11);
+  });
+});
+
+describe("a bracket taken before it closes", () => {
+  test("200 random machines, after 0 to 20 steps: the interval is wide, and holds the law", () => {
+    const random = randomNumbers(22);
+    let open = 0;
+    for (let i = 0; i < 200; i++) {
+      const { automaton, weights } = randomMachine(random, 7, 0.7 * random());
+      const law = exactLaw(plain(automaton, -1), weights, 60);
+      const skeleton = findSkeleton(
+        automaton,
+        markTransitions(automaton),
+        true,
+        Int32Array.of(0),
+        usableColumns(probabilitiesOf(weights)),
+      );
+      const chain = fillChain(shapeChain(skeleton, skeleton.classes.entry), probabilitiesOf(weights));
+      const start = { places: Int32Array.of(chain.shape.placeOf[0]!), weights: Float64Array.of(1) };
+      const cut = beginLaw(chain, start, new Uint8Array(chain.shape.size), Math.floor(20 * random()));
+      for (const n of [20, 21, 22, 23, 24, 25, 30, 45, 60]) {
+        const { low, high } = exitedWithin(cut, n);
+        expect(compare(low, law[n]!)).toBeLessThanOrEqual(0);
+        expect(compare(high, law[n]!)).toBeGreaterThanOrEqual(0);
+        if (high - low > 1e-6 * high) open++;
+      }
+    }
+    expect(open).toBeGreaterThan(500);
   });
 });
 
