@@ -48,7 +48,10 @@ export const catalogue = {
     "Numbers are decimal, with a digit on both sides of a point, and no letter straight after: 12, 0.05, 1e-4, 5%.",
   ),
   syntax: error("syntax error", "The text is not a declaration of the language at this place."),
-  nesting_too_deep: error("nesting too deep", "Parentheses, braces and operators may be nested 64 deep."),
+  nesting_too_deep: error(
+    "nesting too deep",
+    "Parentheses, braces and operators may be nested 64 deep; one chain of operators may have 1,000 of them.",
+  ),
   // Names and files
   name_taken: error(
     "name used twice",

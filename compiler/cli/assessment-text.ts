@@ -138,5 +138,6 @@ function duration(arl: number | null, seconds: number): string {
   const unit =
     (["year", "week", "day", "h", "min"] as const).find((name) => total >= 2 * SECONDS[name]) ?? "s";
   const amount = total / SECONDS[unit];
-  return `${amount >= 1e6 ? amount.toExponential(2) : Number(amount.toPrecision(3))} ${unit}`;
+  const many = unit === "year" || unit === "week" || unit === "day" ? `${unit}s` : unit;
+  return `${amount >= 1e6 ? amount.toExponential(2) : Number(amount.toPrecision(3))} ${many}`;
 }

@@ -20,16 +20,12 @@ export type Reporter = {
 
 /** The reporter that the options ask for. */
 export function reporterFor(policy: Policy, options: { json?: true | undefined }): Reporter {
-  const totals = {
-    trials: 0,
-    refused: 0,
-    raises: new Map<string, number>(policy.signals.map(({ name }) => [name, 0])),
-  };
+  const totals: Totals = { trials: 0, refused: 0, skipped: 0, broken: 0, raises: new Map() };
+  for (const { name } of policy.signals) totals.raises.set(name, 0);
   const show = options.json ? showJson : showText;
   return {
     reading: (detector, raises, reading) => {
-      if (raises === REFUSED) totals.refused++;
-      else totals.trials++;
+      count(policy, totals, raises, reading);
       if (raises === 0) return;
       const signals = detector.namesOf(raises);
       for (const name of signals) totals.raises.set(name, (totals.raises.get(name) ?? 0) + 1);
@@ -41,12 +37,29 @@ export function reporterFor(policy: Policy, options: { json?: true | undefined }
       });
     },
     end: (unfinishedRows) => {
-      const { trials, refused } = totals;
-      const signals = Object.fromEntries(totals.raises);
-      if (options.json) sayJson({ summary: { trials, refused, unfinishedRows, signals } }, 0);
-      else say(summaryText(trials, refused, unfinishedRows, totals.raises));
+      const { raises, ...counts } = totals;
+      if (options.json)
+        sayJson({ summary: { ...counts, unfinishedRows, signals: Object.fromEntries(raises) } }, 0);
+      else say(summaryText(totals, unfinishedRows));
     },
   };
+}
+
+/** Trials include the broken ones; readings refused or skipped are none. */
+type Totals = {
+  trials: number;
+  refused: number;
+  skipped: number;
+  broken: number;
+  readonly raises: Map<string, number>;
+};
+
+function count(policy: Policy, totals: Totals, raises: number, { letters }: Reading): void {
+  const isMissing = letters.includes(null);
+  if (raises === REFUSED) totals.refused++;
+  else if (isMissing && policy.missing === "skip") totals.skipped++;
+  else totals.trials++;
+  if (isMissing && policy.missing === "break") totals.broken++;
 }
 
 type Event = {
@@ -85,7 +98,8 @@ function showText(policy: Policy, reading: Reading, { trial, refused, signals, b
   const what = policy.alphabets.map(({ name }, at) => {
     const value = reading.values?.[at];
     const letter = reading.letters[at];
-    return [name, value ?? (reading.values || letter === null ? "missing" : null), letter]
+    const shown = value ?? (reading.values || letter === null ? "missing" : null);
+    return [name, shown, shown === letter ? null : (letter ?? (value ? "(no letter of it)" : null))]
       .filter((part) => part !== null && part !== undefined)
       .map(visible)
       .join(" ");
@@ -112,16 +126,15 @@ function reasonText({ rule, from, to, complete }: Reason): string {
   return from === to ? `${rule}, trial ${to}` : `${rule}, trials ${from} to ${to}`;
 }
 
-function summaryText(
-  trials: number,
-  refused: number,
-  unfinishedRows: number,
-  raises: ReadonlyMap<string, number>,
-): string {
-  const counts = [...raises].map(([name, count]) => `${name} ${count}`).join(", ");
-  const parts = [`${trials} ${trials === 1 ? "trial" : "trials"}`, `signals raised: ${counts}`];
-  if (refused > 0) parts.push(`${refused} ${refused === 1 ? "reading" : "readings"} refused`);
-  if (unfinishedRows > 0)
-    parts.push(`${unfinishedRows} ${unfinishedRows === 1 ? "row" : "rows"} left in an unfinished subgroup`);
-  return parts.join("; ");
+function summaryText({ trials, refused, skipped, broken, raises }: Totals, unfinishedRows: number): string {
+  const counted = (amount: number, one: string, many: string, rest: string) =>
+    amount > 0 ? [`${amount} ${amount === 1 ? one : many}${rest}`] : [];
+  return [
+    `${trials} ${trials === 1 ? "trial" : "trials"}`,
+    `signals raised: ${[...raises].map(([name, amount]) => `${name} ${amount}`).join(", ")}`,
+    ...counted(refused, "reading", "readings", " refused"),
+    ...counted(skipped, "reading", "readings", " skipped"),
+    ...counted(broken, "trial", "trials", " broken by a missing value"),
+    ...counted(unfinishedRows, "row", "rows", " left in an unfinished subgroup"),
+  ].join("; ");
 }

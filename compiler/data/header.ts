@@ -57,10 +57,17 @@ function notThere(column: string, purpose: string, names: readonly string[], lin
   const shown = names.slice(0, 20).map(quoted).join(", ");
   const more = names.length > 20 ? ` and ${names.length - 20} more` : "";
   const what = `there is no column ${quoted(column)} for ${purpose}; the columns are ${shown}${more}`;
-  return { code: "data_column_missing", row: null, line, column, what, hint: hintFor(column, names) };
+  return {
+    code: "data_column_missing",
+    row: null,
+    line,
+    column,
+    what,
+    hint: hintFor(column, purpose, names),
+  };
 }
 
-function hintFor(column: string, names: readonly string[]): string {
+function hintFor(column: string, purpose: string, names: readonly string[]): string {
   const only = names.length === 1 ? (names[0] ?? "") : "";
   if (only.includes(";")) return "the cells seem to be separated by semicolons: separate them by commas";
   if (only.includes("\t")) return "the cells seem to be separated by tabs: separate them by commas";
@@ -68,9 +75,10 @@ function hintFor(column: string, names: readonly string[]): string {
     return "the first line must be a header that names the columns";
   }
   const meant = nearest(column, names) ?? names.find((name) => name.toLowerCase() === column.toLowerCase());
-  return meant === undefined
+  if (meant !== undefined) return `did you mean ${quoted(meant)}?`;
+  return purpose.startsWith("statistic")
     ? "name the column of the statistic, as in `--column STATISTIC=NAME`, or rename it in the file"
-    : `did you mean ${quoted(meant)}?`;
+    : "name one of these columns";
 }
 
 function thereTwice(column: string, line: number): DataProblem {

@@ -146,7 +146,8 @@ function makeRow(assessor: Assessor, question: RowQuestion): Row {
   const lengths = assessor.runLengthsAt(signal, letters, start);
   const columns = assessor.columnsAt(letters, machine.columnOf, machine.columns);
   const mean = lengths.mean();
-  const quantile = (share: string) => finite(lengths.quantile(new Fraction(share)).high);
+  // Where rounding leaves open whether the share is just reached, it is taken as reached.
+  const quantile = (share: string) => finite(lengths.quantile(new Fraction(share)).low);
   return {
     signal: nameOf(policy, signal),
     process: policy.processes[point.process]?.name ?? "",

@@ -2,7 +2,13 @@
 
 import Fraction from "fraction.js";
 import { describe, expect, test } from "vitest";
-import { fillChain, findSkeleton, markTransitions, shapeChain, usableColumns } from "../../compiler/analysis/chain.ts";
+import {
+  fillChain,
+  findSkeleton,
+  markTransitions,
+  shapeChain,
+  usableColumns,
+} from "../../compiler/analysis/chain.ts";
 import { beginLaw, exitedWithin } from "../../compiler/analysis/law.ts";
 import { prepareRunLengths, type RunLengths } from "../../compiler/analysis/run-lengths.ts";
 import type { Automaton } from "../../compiler/machine/automaton.ts";
