@@ -12,6 +12,7 @@ import {
   mkdirSync,
   readdirSync,
   readFileSync,
+  renameSync,
   rmSync,
   statSync,
   writeFileSync,
@@ -21,7 +22,10 @@ import { gzipSync } from "node:zlib";
 import { build } from "esbuild";
 
 const root = join(import.meta.dirname, "..");
-const dist = join(root, "dist");
+// Made beside, and put in place whole: what runs from dist/ meanwhile finds the old one until then.
+const place = join(root, "dist");
+const building = `node_modules/.cache/tocsin-dist-${process.pid}`;
+const dist = join(root, building);
 const stamp = join(root, "node_modules/.cache/tocsin/built");
 
 /** Names with `/` of the files under `folder` (itself from the root), sorted. @param {string} folder */
@@ -70,7 +74,7 @@ async function bundle() {
   const command = await build({
     ...common,
     entryPoints: { tocsin: "compiler/cli/tocsin.ts" },
-    outdir: "dist",
+    outdir: building,
     chunkNames: "command/[name]-[hash]",
     splitting: true,
     platform: "node",
@@ -81,7 +85,7 @@ async function bundle() {
   const library = await build({
     ...common,
     entryPoints: { index: "compiler/compile.ts" },
-    outdir: "dist",
+    outdir: building,
     chunkNames: "library/[name]-[hash]",
     splitting: true,
     platform: "browser",
@@ -90,11 +94,11 @@ async function bundle() {
   const runtime = await build({
     ...common,
     entryPoints: { runtime: "runtime/index.ts" },
-    outdir: "dist",
+    outdir: building,
     platform: "neutral",
     target: "es2022",
   });
-  const imports = runtime.metafile.outputs["dist/runtime.js"]?.imports ?? [];
+  const imports = runtime.metafile.outputs[`${building}/runtime.js`]?.imports ?? [];
   if (imports.length > 0)
     throw new Error(`the runtime imports ${imports.map(({ path }) => path).join(", ")}`);
   return [command.metafile, library.metafile, runtime.metafile];
@@ -119,10 +123,14 @@ function specifiers(text) {
  */
 function declare() {
   const tsc = join(root, "node_modules/typescript/bin/tsc");
-  const run = spawnSync(process.execPath, [tsc, "-p", "tsconfig.build.json"], {
-    cwd: root,
-    stdio: "inherit",
-  });
+  const run = spawnSync(
+    process.execPath,
+    [tsc, "-p", "tsconfig.build.json", "--outDir", `${building}/types`],
+    {
+      cwd: root,
+      stdio: "inherit",
+    },
+  );
   if (run.status !== 0) throw new Error("tsc could not write the types");
   /** @type {Set<string>} */
   const reached = new Set();
@@ -148,7 +156,8 @@ function declare() {
     visit(join(dist, `types/${module}.d.ts`));
     writeFileSync(join(dist, `${face}.d.ts`), `export * from "./types/${module}.js";\n`);
   }
-  for (const file of filesUnder("dist/types")) if (!reached.has(join(root, file))) rmSync(join(root, file));
+  for (const file of filesUnder(`${building}/types`))
+    if (!reached.has(join(root, file))) rmSync(join(root, file));
   for (const folder of readdirSync(join(dist, "types"), { recursive: true, encoding: "utf8" })
     .sort()
     .reverse()) {
@@ -215,29 +224,29 @@ function notices(metafiles) {
 }
 
 function printSizes() {
-  for (const file of filesUnder("dist").filter((name) => name.endsWith(".js"))) {
+  for (const file of filesUnder(building).filter((name) => name.endsWith(".js"))) {
     const bytes = readFileSync(join(root, file));
     const kilobytes = (/** @type {number} */ size) => `${(size / 1000).toFixed(1)} kB`.padStart(10);
     process.stdout.write(
-      `${file.padEnd(44)}${kilobytes(bytes.length)}${kilobytes(gzipSync(bytes).length)} gzipped\n`,
+      `${file.replace(building, "dist").padEnd(44)}${kilobytes(bytes.length)}${kilobytes(gzipSync(bytes).length)} gzipped\n`,
     );
   }
 }
 
 const hash = inputsHash();
 const fresh =
-  existsSync(join(dist, "NOTICES.txt")) && existsSync(stamp) && readFileSync(stamp, "utf8") === hash;
+  existsSync(join(place, "NOTICES.txt")) && existsSync(stamp) && readFileSync(stamp, "utf8") === hash;
 const onlyIfStale = process.argv.includes("--if-stale");
 if (!(onlyIfStale && fresh)) {
-  rmSync(dist, { recursive: true, force: true });
   const metafiles = await bundle();
   finishCommand();
   declare();
   const count = notices(metafiles);
-  mkdirSync(dirname(stamp), { recursive: true });
+  if (!onlyIfStale) printSizes();
+  rmSync(place, { recursive: true, force: true });
+  renameSync(dist, place);
   writeFileSync(stamp, hash);
   if (!onlyIfStale) {
-    printSizes();
     process.stdout.write(`${count} packages are bundled in; dist/NOTICES.txt has their licences\n`);
   }
 }

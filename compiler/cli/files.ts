@@ -108,13 +108,14 @@ function writeNew(path: string, pieces: Iterable<string>): void {
 
 /** Refuses a place where nothing can be written, before long work is done for it. */
 export function demandWritable(path: string): void {
+  const folder = dirname(path);
   try {
-    accessSync(dirname(path), constants.W_OK);
-    if (!existsSync(path) || !statSync(path).isDirectory()) return;
+    accessSync(folder, constants.W_OK);
   } catch (thrown) {
     throw new UsageError(`${path}: ${reasonOf(thrown)}`);
   }
-  throw new UsageError(`${path}: ${WORDS.EISDIR}`);
+  if (!statSync(folder).isDirectory()) throw new UsageError(`${path}: ${WORDS.ENOTDIR}`);
+  if (existsSync(path) && statSync(path).isDirectory()) throw new UsageError(`${path}: ${WORDS.EISDIR}`);
 }
 
 /** Refuses to overwrite unless told. */

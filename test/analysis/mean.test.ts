@@ -15,7 +15,16 @@ import { planShape, prepareSystem, type SolverOptions } from "../../compiler/ana
 import { TO_THE_LAST } from "../../compiler/analysis/sweeps.ts";
 import { stepVariances } from "../../compiler/analysis/variance.ts";
 import { exactMoments, relativeError, toNumber } from "../oracle/exact-chain.ts";
-import { plain, probabilitiesOf, type RandomCase, randomMachine, randomNumbers } from "./machines.ts";
+import {
+  plain,
+  probabilitiesOf,
+  type RandomCase,
+  randomMachine,
+  randomNumbers,
+  run,
+  scan,
+  weakRun,
+} from "./machines.ts";
 
 const SWEEPS: SolverOptions = { elimination: false, limits: TO_THE_LAST, refine: true };
 const ELIMINATION: SolverOptions = { elimination: true, limits: TO_THE_LAST, refine: true };
@@ -73,6 +82,22 @@ describe.each([
         expect(relativeError(variances[place]!, variance), `${toNumber(variance)}`).toBeLessThan(1e-10);
       }
   });
+});
+
+test.each([
+  ["5 of 11 at 1/10", scan(5, 11), [1n, 9n]],
+  ["5 of 11 at 1/2", scan(5, 11), [1n, 1n]],
+  ["weak run of 6, gap 8", weakRun(6, 8), [1n, 5n, 2n]],
+  ["40 in a row", run(40), [9n, 1n]],
+] as const)("%s: sweeps and elimination agree in every answer", (_name, automaton, weights) => {
+  const [one, other] = [SWEEPS, ELIMINATION].map((options) =>
+    prepareRunLengths(automaton, () => true, options).under(probabilitiesOf(weights)),
+  );
+  const bounds = one!.relativeErrorBound()! + other!.relativeErrorBound()!;
+  expect(bounds).toBeLessThan(1e-12);
+  expect(Math.abs(one!.mean() / other!.mean() - 1)).toBeLessThanOrEqual(bounds);
+  expect(one!.standardDeviation() / other!.standardDeviation()).toBeCloseTo(1, 12);
+  expect(one!.endsIn(() => true)).toBeCloseTo(1, 12);
 });
 
 test("equal questions have equal answers, to the last bit, whatever was asked before", () => {

@@ -45,7 +45,7 @@ describe("an empty cell, under each policy for missing values", () => {
     ],
     [
       "missing skip",
-      "trial 2  row 3  x 3 high  s — 2 high, trials 1 to 2\n2 trials; signals raised: s 1\n",
+      "trial 2  row 3  x 3 high  s — 2 high, trials 1 to 2\n2 trials; signals raised: s 1; 1 reading skipped\n",
       "stays",
     ],
     ["missing break", "3 trials; signals raised: s 0\n", "clears memory"],

@@ -1,7 +1,7 @@
 // `tocsin replay --state`: stopping anywhere and going on is as if nothing had stopped; a state that is not of this policy
 // and these options is refused, and a refusal or a fault leaves the file as it was.
 
-import { mkdirSync } from "node:fs";
+import { mkdirSync, rmSync } from "node:fs";
 import { join } from "node:path";
 import { describe, expect, test } from "vitest";
 import { jsonLines, placeWith } from "./command.ts";
@@ -83,6 +83,7 @@ describe("going on", () => {
 describe("refused", () => {
   const options = ["--stream", "line", "--state", "kept.json"];
   const start = () => {
+    rmSync(join(folder, "kept.json"), { force: true });
     expect(tocsin(["replay", "wide.tocsin", "-", ...options], table(ROWS.slice(0, 9))).status).toBe(0);
     return read("kept.json");
   };

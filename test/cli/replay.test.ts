@@ -90,7 +90,7 @@ describe("JSON lines", () => {
           because: [{ signal: "look", rule: "2 low", trials: [6, 7], complete: true }],
         },
       ],
-      summary: { trials: 8, refused: 1, unfinishedRows: 0, signals: { act: 1, look: 1 } },
+      summary: { trials: 8, refused: 1, skipped: 0, unfinishedRows: 0, signals: { act: 1, look: 1 } },
     });
   });
 
@@ -102,7 +102,13 @@ describe("JSON lines", () => {
       { trial: 3, row: 4, time: "A", stream: "A", signals: ["act"] },
       { trial: 3, row: 6, time: "B", stream: "B", signals: ["act"] },
     ]);
-    expect(summary).toEqual({ trials: 6, refused: 0, unfinishedRows: 0, signals: { act: 2, look: 0 } });
+    expect(summary).toEqual({
+      trials: 6,
+      refused: 0,
+      skipped: 0,
+      unfinishedRows: 0,
+      signals: { act: 2, look: 0 },
+    });
   });
 });
 
@@ -145,7 +151,7 @@ describe("--letters", () => {
     [
       "door",
       "2 (cold, shut) ?",
-      "trial 2  row 2  heat cold  door shut  draught — 2 cold, trials 1 to 2\n3 trials; signals raised: draught 1, ajar 0\n",
+      "trial 2  row 2  heat cold  door shut  draught — 2 cold, trials 1 to 2\n2 trials; signals raised: draught 1, ajar 0; 1 reading skipped\n",
     ],
   ])("%s: %s", (policy, trials, text) => {
     expect(tocsin(["replay", `${policy}.tocsin`, "--letters", trials])).toEqual({
