@@ -1,16 +1,16 @@
 /**
- * Automaton and column probabilities to a sparse Markov chain. In: an automaton, which transitions are marked (by their
- * output), where the chain begins, the columns that can occur. Out: its shape (everything but numbers, made once), then,
- * for each choice of probabilities, its values.
+ * Automaton and column probabilities to a sparse Markov chain. In: an automaton, which transitions are marked (by
+ * their output), where the chain begins, the columns that can occur. Out: its shape (everything but numbers, made
+ * once), then, for each choice of probabilities, its values.
  *
- * A place is a state the start leads to with positive probability. Places stand class by class (see classes.ts), a move
- * leading to the same class or an earlier one; within a class in depth-first postorder from its *anchor*, which is the
- * last. In an absorbing chain a marked transition is an exit; else it is a move like any other, and the marks are kept
- * beside. Parallel moves are merged; no probability is ever one minus another: what leaves a place, what exits and what
- * stays are own sums, so that a place's loop is what the others leave over, exactly.
+ * A place is a state the start leads to with positive probability. Places stand class by class (see classes.ts), a
+ * move leading to the same class or an earlier one; within a class in depth-first postorder from its *anchor*, which
+ * is the last. In an absorbing chain a marked transition is an exit; else it is a move like any other, and the marks
+ * are kept beside. Parallel moves are merged; no probability is ever one minus another: what leaves a place, what
+ * exits and what stays are own sums, so that a place's loop is what the others leave over, exactly.
  *
- * Layout: the moves of place i, its loop apart, stand at rowStart[i] to rowStart[i + 1]: first those within its class, then
- * from rowAnchor[i] the move to the anchor, then from rowLeave[i] those to earlier classes.
+ * Layout: the moves of place i, its loop apart, stand at rowStart[i] to rowStart[i + 1]: first those within its
+ * class, then from rowAnchor[i] the move to the anchor, then from rowLeave[i] those to earlier classes.
  */
 import { InternalError } from "../../grammar/internal-error.ts";
 import type { Automaton } from "../machine/automaton.ts";
@@ -82,7 +82,10 @@ export function usableColumns(probabilities: DoubleDoubles): Int32Array {
 /** What a chain's shape depends on before its anchors are chosen. */
 export type Skeleton = { readonly moves: Moves; readonly marks: Marks; readonly classes: Classes };
 
-/** The skeleton of the chain from `starts` (states) along `usable` columns; `absorbing` says whether marked transitions end it. */
+/**
+ * The skeleton of the chain from `starts` (states) along `usable` columns; `absorbing` says whether marked
+ * transitions end it.
+ */
 export function findSkeleton(
   automaton: Automaton,
   marks: Marks,
@@ -276,18 +279,21 @@ function sortRow(
 /** The chain of a shape under given probabilities by column, exactly the shape's usable columns being positive. */
 export function fillChain(shape: Shape, probabilities: DoubleDoubles): Chain {
   const setSums = sumSets(shape.sets, probabilities);
-  const pick = (sets: Int32Array): Float64Array => {
-    const values = new Float64Array(sets.length);
-    for (let i = 0; i < sets.length; i++) values[i] = setSums.high[sets[i]!]!;
-    return values;
-  };
+  const { high } = setSums;
   return {
     shape,
     setSums,
-    move: pick(shape.moveSet),
-    loop: pick(shape.loopSet),
-    mark: pick(shape.markSet),
-    out: pick(shape.outSet),
-    exit: pick(shape.exitSet),
+    move: gather(shape.moveSet, high),
+    loop: gather(shape.loopSet, high),
+    mark: gather(shape.markSet, high),
+    out: gather(shape.outSet, high),
+    exit: gather(shape.exitSet, high),
   };
+}
+
+/** The values of the sets. */
+function gather(sets: Int32Array, bySet: Float64Array): Float64Array {
+  const values = new Float64Array(sets.length);
+  for (let i = 0; i < sets.length; i++) values[i] = bySet[sets[i]!]!;
+  return values;
 }

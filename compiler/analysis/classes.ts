@@ -1,7 +1,7 @@
 /**
  * The strongly connected classes of a sparse graph given as an automaton's moves, and the order in which one class is
- * best swept. In: moves (some columns unused, some transitions skipped), the states to begin from. Out: class numbers in
- * reverse topological order: a move leads to the same class or to one of a lower number.
+ * best swept. In: moves (some columns unused, some transitions skipped), the states to begin from. Out: class numbers
+ * in reverse topological order: a move leads to the same class or to one of a lower number.
  *
  * Iterative throughout, so that 200,000 states in one path do no harm. Cost: one look at each move.
  * Source: Tarjan (1972), "Depth-first search and linear graph algorithms", SIAM J. Comput. 1:146.
@@ -23,8 +23,8 @@ export type Classes = {
   /** By state; -1 where none of the starts leads. */
   readonly classOf: Int32Array;
   /**
-   * The states reached, class by class; those of class k stand at memberStart[k] to memberStart[k + 1], in depth-first postorder
-   * from the class's entry, which is the last.
+   * The states reached, class by class; those of class k stand at memberStart[k] to memberStart[k + 1], in
+   * depth-first postorder from the class's entry, which is the last.
    */
   readonly members: Int32Array;
   readonly memberStart: Int32Array;
@@ -98,13 +98,14 @@ export function findClasses(moves: Moves, starts: Int32Array): Classes {
 function sortByClass(states: Int32Array, classOf: Int32Array, memberStart: readonly number[]): Int32Array {
   const cursor = new Int32Array(memberStart);
   const sorted = new Int32Array(states.length);
-  for (const state of states) sorted[cursor[classOf[state]!]!++] = state;
+  for (let i = 0; i < states.length; i++) sorted[cursor[classOf[states[i]!]!]!++] = states[i]!;
   return sorted;
 }
 
 /**
- * The members of the class of `root` in depth-first postorder, `root` the last, written into `into` from `at` on. Swept in
- * this order a system x = c + Q x meets most successors before their predecessors. `seen` is by state and is marked.
+ * The members of the class of `root` in depth-first postorder, `root` the last, written into `into` from `at` on.
+ * Swept in this order a system x = c + Q x meets most successors before their predecessors. `seen` is by state and is
+ * marked.
  */
 export function writePostorder(
   moves: Moves,
@@ -142,8 +143,8 @@ export function writePostorder(
 }
 
 /**
- * By class, the member a walk from the class's entry meets most often in its first `steps` steps; ties go to the smallest
- * state. `weight` is by column. A member met often makes short cycles.
+ * By class, the member a walk from the class's entry meets most often in its first `steps` steps; ties go to the
+ * smallest state. `weight` is by column. A member met often makes short cycles.
  */
 export function findAnchors(moves: Moves, classes: Classes, weight: Float64Array, steps: number): Int32Array {
   const anchors = classes.entry.slice();
@@ -177,7 +178,9 @@ export function findAnchors(moves: Moves, classes: Classes, weight: Float64Array
   return anchors;
 }
 
-/** One step of the walk within a class: moves the mass of `active` into `coming`, lists where it went, empties `mass`. */
+/**
+ * One step of the walk within a class: moves the mass of `active` into `coming`, lists where it went, empties `mass`.
+ */
 function spread(
   moves: Moves,
   classOf: Int32Array,

@@ -1,12 +1,14 @@
 /**
- * What a chain does in the long run: its closed classes, the share of steps each spends on gains, and how far from that share
- * a start is ahead. In: a system whose marked transitions go on like any other. Out: rates with proven bounds, advances.
+ * What a chain does in the long run: its closed classes, the share of steps each spends on gains, and how far from
+ * that share a start is ahead. In: a system whose marked transitions go on like any other. Out: rates with proven
+ * bounds, advances.
  *
- * Rate of a class: gains of a cycle over steps of a cycle (see note [cycle certificate]), both sums of non-negative terms; where
- * cycles are long it is refined like a mean. Advance of a place: gains until the anchor less what the rate would give for
- * the steps until then; so that the mean gains of n steps from i are n rate + advance_i - E advance(where it then is).
- * Source: renewal reward theorem, Kemeny & Snell (1960), *Finite Markov Chains*, 6.1; Howard (1960), *Dynamic Programming
- * and Markov Processes*, ch. 4, for the relative values here called advances.
+ * Rate of a class: gains of a cycle over steps of a cycle (see note [cycle certificate]), both sums of non-negative
+ * terms; where cycles are long it is refined like a mean. Advance of a place: gains until the anchor less what the
+ * rate would give for the steps until then; so that the mean gains of n steps from i are n rate + advance_i - E
+ * advance(where it then is).
+ * Source: renewal reward theorem, Kemeny & Snell (1960), *Finite Markov Chains*, 6.1; Howard (1960), *Dynamic
+ * Programming and Markov Processes*, ch. 4, for the relative values here called advances.
  */
 import { type CycleSolution, certifyCycle } from "./certificate.ts";
 import type { DoubleDoubles } from "./double-double.ts";
@@ -28,7 +30,9 @@ export type ClosedClass = {
   readonly advanceError: number;
 };
 
-/** The error of an advance, relative to the sizes it is the difference of; solutions are right to 1e-13 and better. */
+/**
+ * The error of an advance, relative to the sizes it is the difference of; solutions are right to 1e-13 and better.
+ */
 const ADVANCE_ACCURACY = 1e-11;
 
 /** A rate is refined when its plain bound is larger than this. */

@@ -1,6 +1,6 @@
 /**
- * Sets of columns, numbered as they are met. A machine has few different ones (all the columns that lead from a state to
- * another form one), so that the probability of each is added up once, in double-double, and rounded once.
+ * Sets of columns, numbered as they are met. A machine has few different ones (all the columns that lead from a state
+ * to another form one), so that the probability of each is added up once, in double-double, and rounded once.
  *
  * Layout: a set is its largest column and the set of the others (a trie). Set 0 is the empty one.
  */

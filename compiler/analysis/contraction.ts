@@ -1,13 +1,13 @@
 /**
- * One class of a chain made smaller before it is swept: every place that a single move leads to (those to the anchor apart) is
- * absorbed into the place that move comes from. In: a chain, a class. Out: rows between the places kept, and how costs of
- * the others are carried to them.
+ * One class of a chain made smaller before it is swept: every place that a single move leads to (those to the anchor
+ * apart) is absorbed into the place that move comes from. In: a chain, a class. Out: rows between the places kept,
+ * and how costs of the others are carried to them.
  *
- * Exact, without subtraction: what leaves a kept place is again an own sum. In machines three places of four go (77,520 of
- * `8 of 20` leave 18,564), a lockout of 5,000 trials goes altogether. Cost: one look at each move.
+ * Exact, without subtraction: what leaves a kept place is again an own sum. In machines three places of four go
+ * (77,520 of `8 of 20` leave 18,564), a lockout of 5,000 trials goes altogether. Cost: one look at each move.
  *
- * Invariant: a place absorbed stands before the place it is absorbed into (in depth-first postorder it is its descendant), so
- * that one pass upwards finds its value once those of the kept places are known.
+ * Invariant: a place absorbed stands before the place it is absorbed into (in depth-first postorder it is its
+ * descendant), so that one pass upwards finds its value once those of the kept places are known.
  * Source: censoring a chain to a subset of its places, Kemeny & Snell (1960), *Finite Markov Chains*, 6.1.
  */
 import type { Chain } from "./chain.ts";
@@ -112,17 +112,34 @@ function writeKeptRows(chain: Chain, numberOf: Int32Array, result: Contraction):
   }
 }
 
-/** The costs of `lanes` systems carried to the kept places and divided by what leaves them, lanes side by side. */
+/** The costs of one or two systems carried to the kept places and divided by what leaves them, lanes side by side. */
 export function carryCosts(rows: Contraction, costs: readonly Float64Array[]): Float64Array {
-  const { first, size, carrier, weight, inverse } = rows;
-  const lanes = costs.length;
-  const carried = new Float64Array(lanes * inverse.length);
-  for (let lane = 0; lane < lanes; lane++) {
-    const cost = costs[lane]!;
-    for (let i = 0; i < size; i++) carried[lanes * carrier[i]! + lane]! += weight[i]! * cost[first + i]!;
-    for (let i = 0; i < inverse.length; i++) carried[lanes * i + lane]! *= inverse[i]!;
-  }
+  const carried = new Float64Array(costs.length * rows.inverse.length);
+  for (let lane = 0; lane < costs.length; lane++) carry(rows, costs[lane]!, carried, costs.length, lane);
   return carried;
+}
+
+function carry(
+  rows: Contraction,
+  cost: Float64Array,
+  carried: Float64Array,
+  lanes: number,
+  lane: number,
+): void {
+  const { first, size, carrier, weight, inverse } = rows;
+  for (let i = 0; i < size; i++) carried[lanes * carrier[i]! + lane]! += weight[i]! * cost[first + i]!;
+  for (let i = 0; i < inverse.length; i++) carried[lanes * i + lane]! *= inverse[i]!;
+}
+
+/** The values at the kept places, from `from` by place of the chain into one lane. */
+export function readKept(
+  { first, kept }: Contraction,
+  from: Float64Array,
+  values: Float64Array,
+  lanes: number,
+  lane: number,
+): void {
+  for (let i = 0; i < kept.length; i++) values[lanes * i + lane] = from[first + kept[i]!]!;
 }
 
 /** The values of all places of the class from those of the kept ones, into `into` by place of the chain. */

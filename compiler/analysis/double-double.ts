@@ -1,11 +1,12 @@
 /**
- * Numbers of twice double precision, many at a time: unevaluated sums high + low with |low| at most half an ulp of high, in
- * two Float64Arrays; a running sum is an `Accumulator`, two numbers in an array. (Single ones: ../chance/double-double.ts.)
+ * Numbers of twice double precision, many at a time: unevaluated sums high + low with |low| at most half an ulp of
+ * high, in two Float64Arrays; a running sum is an `Accumulator`, two numbers in an array. (Single ones:
+ * ../chance/double-double.ts.)
  *
  * Accuracy: each operation is right to 2^-102 of the sizes of what it adds, so long as no product falls below 1e-290.
- * Source: Dekker (1971), "A floating-point technique for extending the available precision", Numer. Math. 18:224; Knuth,
- * *The Art of Computer Programming* vol. 2, 4.2.2, for the exact sum; Joldes, Muller & Popescu (2017), ACM TOMS 44:15,
- * for the bounds.
+ * Source: Dekker (1971), "A floating-point technique for extending the available precision", Numer. Math. 18:224;
+ * Knuth, *The Art of Computer Programming* vol. 2, 4.2.2, for the exact sum; Joldes, Muller & Popescu (2017), ACM
+ * TOMS 44:15, for the bounds.
  */
 
 /** A running double-double sum: [high, low]. */

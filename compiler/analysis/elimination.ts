@@ -1,12 +1,12 @@
 /**
- * Compiled elimination without subtraction. For one class of a chain, solves y = c + Q' y, Q' being the moves within the
- * class with those to the anchor left out, by eliminating every place but the anchor. The order, the fill and the slot of
- * every number are found once (a `Program`); a run for new probabilities replays them.
+ * Compiled elimination without subtraction. For one class of a chain, solves y = c + Q' y, Q' being the moves within
+ * the class with those to the anchor left out, by eliminating every place but the anchor. The order, the fill and the
+ * slot of every number are found once (a `Program`); a run for new probabilities replays them.
  *
- * Every pivot is the sum of what leaves the place, not one minus what stays, so that no operation subtracts: each result is
- * right to a few n u relative to itself, whatever its size (Grassmann, Taksar & Heyman 1985, Oper. Res. 33:1107;
- * O'Cinneide 1993, Numer. Math. 65:109). Order: the least product of moves in and moves out (Markowitz 1957, Management
- * Science 3:255). Cost of a run: `flops`, about 2.3 ns each.
+ * Every pivot is the sum of what leaves the place, not one minus what stays, so that no operation subtracts: each
+ * result is right to a few n u relative to itself, whatever its size (Grassmann, Taksar & Heyman 1985, Oper. Res.
+ * 33:1107; O'Cinneide 1993, Numer. Math. 65:109). Order: the least product of moves in and moves out (Markowitz 1957,
+ * Management Science 3:255). Cost of a run: `flops`, about 2.3 ns each.
  *
  * Places are counted from the first of the class; the anchor is the last.
  */
@@ -67,7 +67,10 @@ type Draft = {
   products: number;
 };
 
-/** The program of a class, or null where elimination would cost too much: more than `mostProducts`, or than sweeps would. */
+/**
+ * The program of a class, or null where elimination would cost too much: more than `mostProducts`, or than sweeps
+ * would.
+ */
 export function compileElimination(shape: Shape, k: number, mostProducts?: number): Program | null {
   const first = shape.classStart[k]!;
   const size = shape.classStart[k + 1]! - first;

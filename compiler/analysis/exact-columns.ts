@@ -1,6 +1,7 @@
 /**
- * Column probabilities as exact fractions, where every letter's is one. In: the letters' fractions by alphabet, the column of each
- * symbol. Out: a fraction for each column. They decide ties that no interval can (exact-law.ts); cost: some microseconds a symbol.
+ * Column probabilities as exact fractions, where every letter's is one. In: the letters' fractions by alphabet, the
+ * column of each symbol. Out: a fraction for each column. They decide ties that no interval can (exact-law.ts); cost:
+ * some microseconds a symbol.
  */
 import Fraction from "fraction.js";
 import type { LetterModel } from "../policy.ts";
@@ -17,8 +18,8 @@ export function exactLetters(model: LetterModel): readonly Fraction[] | null {
 }
 
 /**
- * The sum over the symbols of each column; the first alphabet varies slowest. Null where a law is not exact or there are very
- * many symbols.
+ * The sum over the symbols of each column; the first alphabet varies slowest. Null where a law is not exact or there
+ * are very many symbols.
  */
 export function exactColumns(
   laws: readonly (readonly Fraction[] | null)[],

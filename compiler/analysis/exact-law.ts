@@ -1,9 +1,10 @@
 /**
- * P(T <= n) in whole numbers, for chains whose column probabilities are exact fractions: decides ties such as P(T <= 15) = 1/2,
- * which no floating-point interval can. In: a shape, the fractions by column, a starting place. Out: exact fractions.
+ * P(T <= n) in whole numbers, for chains whose column probabilities are exact fractions: decides ties such as P(T <=
+ * 15) = 1/2, which no floating-point interval can. In: a shape, the fractions by column, a starting place. Out: exact
+ * fractions.
  *
- * With D the common denominator every path of n steps weighs a whole number of D^-n; these are added forwards. Cost: a look
- * at each move a step, on integers that grow by log2 D bits a step; refused beyond `MOST_WORK`.
+ * With D the common denominator every path of n steps weighs a whole number of D^-n; these are added forwards. Cost:
+ * a look at each move a step, on integers that grow by log2 D bits a step; refused beyond `MOST_WORK`.
  */
 import Fraction from "fraction.js";
 import type { Shape } from "./chain.ts";

@@ -1,10 +1,11 @@
 /**
- * Mean steps until exit as an exact fraction, for chains whose column probabilities are exact fractions. In: a plan, the
- * fractions by column, a place. Out: the fraction, or null where that is too much work or the mean is infinite.
+ * Mean steps until exit as an exact fraction, for chains whose column probabilities are exact fractions. In: a plan,
+ * the fractions by column, a place. Out: the fraction, or null where that is too much work or the mean is infinite.
  *
- * With D the common denominator and M the whole numbers of the moves, A = D I - M: det A and x det A are whole numbers from 0
- * to N D^N. Both are found modulo primes below 2^25 (products then fit a double exactly) by replaying the compiled
- * elimination, and put together by the Chinese remainder theorem. A prime that divides a pivot is passed over.
+ * With D the common denominator and M the whole numbers of the moves, A = D I - M: det A and x det A are whole
+ * numbers from 0 to N D^N. Both are found modulo primes below 2^25 (products then fit a double exactly) by replaying
+ * the compiled elimination, and put together by the Chinese remainder theorem. A prime that divides a pivot is passed
+ * over.
  * Source: von zur Gathen & Gerhard (2013), *Modern Computer Algebra*, 5.5.
  */
 import Fraction from "fraction.js";
@@ -44,7 +45,9 @@ export function exactMean(plan: Plan, fractions: readonly Fraction[], place: num
   return new Fraction(product, determinant);
 }
 
-/** The programs of all classes (null for a class of one place); null where one cannot be eliminated or cannot exit. */
+/**
+ * The programs of all classes (null for a class of one place); null where one cannot be eliminated or cannot exit.
+ */
 function programsOf({ shape, programOf }: Plan): (Program | null)[] | null {
   const programs: (Program | null)[] = [];
   for (let k = 0; k < shape.classCount; k++) {

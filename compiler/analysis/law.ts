@@ -1,18 +1,21 @@
 /**
- * The law of the number of steps T until exit: P(T <= n) for any n, from given starting places, with proven intervals.
+ * The law of the number of steps T until exit: P(T <= n) for any n, from given starting places, with proven
+ * intervals.
  *
- * note [hazard bracket]
- * Backwards, with sums of non-negative terms only: u_t = Q^t 1 (alive after t steps) and w_t = Q^t F_d (exit within the d
- * steps after), d the chain's period. For every start and every later time n >= M, n = M (mod d), the chance of an exit within d steps
- * given none until n is a weighted mean of w_M / u_M over the places of the phase of the start; so it lies between their minimum
- * and maximum, which close in on each other geometrically. Beyond M the law is therefore geometric between two known ratios, and P(T <= n) at
- * n = 1e15 costs no more than at n = M. Small probabilities are sums, never 1 - P(T > n). Where a place can never exit (a leak), leaving for it
- * counts as an end of its own kind, and the share of exits among ends is bracketed in the same way.
- * Rounding: after t steps every number is wrong by at most (t + 1)(w + 3) u relative, w the widest row; that widens everything stated.
+ * note [hazard bracket] Backwards, with sums of non-negative terms only: u_t = Q^t 1 (alive after t steps) and w_t =
+ * Q^t F_d (exit within the d steps after), d the chain's period. For every start and every later time n >= M, n = M
+ * (mod d), the chance of an exit within d steps given none until n is a weighted mean of w_M / u_M over the places of
+ * the phase of the start; so it lies between their minimum and maximum, which close in on each other geometrically.
+ * Beyond M the law is therefore geometric between two known ratios, and P(T <= n) at n = 1e15 costs no more than at n
+ * = M. Small probabilities are sums, never 1 - P(T > n). Where a place can never exit (a leak), leaving for it counts
+ * as an end of its own kind, and the share of exits among ends is bracketed in the same way.
+ * Rounding: after t steps every number is wrong by at most (t + 1)(w + 3) u relative, w the widest row; that widens
+ * everything stated.
  *
- * Chains whose bracket closes only like 1/t (stages that follow one another with equal rates) are iterated to the limit of
- * work; beyond it the intervals are wide, and say so.
- * Source: bounds of the Perron root by ratios, Collatz (1942), Math. Z. 48:221; their use for the law is proven above.
+ * Chains whose bracket closes only like 1/t (stages that follow one another with equal rates) are iterated to the
+ * limit of work; beyond it the intervals are wide, and say so.
+ * Source: bounds of the Perron root by ratios, Collatz (1942), Math. Z. 48:221; their use for the law is proven
+ * above.
  */
 import type { Chain } from "./chain.ts";
 import { UNIT } from "./double-double.ts";
@@ -64,8 +67,8 @@ const TINY = 1e-280;
 const NO_BRACKET: Bracket = { low: 0, high: 0, shareLow: 1, shareHigh: 1 };
 
 /**
- * The law of T from `start`. `hopeless` marks the places from which no exit can be reached; `patience` is the number of steps
- * after which the bracket is taken as it is, open or not.
+ * The law of T from `start`. `hopeless` marks the places from which no exit can be reached; `patience` is the number
+ * of steps after which the bracket is taken as it is, open or not.
  */
 export function beginLaw(
   chain: Chain,
@@ -136,7 +139,10 @@ function leaving(chain: Chain, hopeless: Uint8Array): Float64Array {
   return sums;
 }
 
-/** By place, the chance that an end of one-step chance `once` comes within `period` steps; recorded in the strands if asked. */
+/**
+ * By place, the chance that an end of one-step chance `once` comes within `period` steps; recorded in the strands if
+ * asked.
+ */
 function withinPeriod(
   chain: Chain,
   once: Float64Array,
@@ -284,8 +290,9 @@ export function exitedWithin(law: Law, n: number): Estimate {
 export type QuantileInterval = { readonly low: number; readonly high: number };
 
 /**
- * The smallest n with P(T <= n) >= q, as the interval of whole numbers the law leaves open (one number, almost always);
- * Infinity where P(T <= n) never comes to q, or not before 1e300. `q` and `complement` = 1 - q are given apart, each to a rounding.
+ * The smallest n with P(T <= n) >= q, as the interval of whole numbers the law leaves open (one number, almost
+ * always); Infinity where P(T <= n) never comes to q, or not before 1e300. `q` and `complement` = 1 - q are given
+ * apart, each to a rounding.
  */
 export function quantileInterval(law: Law, q: number, complement: number): QuantileInterval {
   const surely = (n: number): boolean => {

@@ -1,14 +1,16 @@
 /**
- * The conditional long-run state: the limit of the law of the state after t steps given no exit until then, averaged over the
- * phases where the chain is periodic (each place in a block counts the same). In: an automaton, what ends a run, column
- * probabilities. Out: the law over the states, with a proven interval for the average of any function of the state.
+ * The conditional long-run state: the limit of the law of the state after t steps given no exit until then, averaged
+ * over the phases where the chain is periodic (each place in a block counts the same). In: an automaton, what ends a
+ * run, column probabilities. Out: the law over the states, with a proven interval for the average of any function of
+ * the state.
  *
- * note [long-run bracket]
- * Forwards from the start, normalised each period, until the masses settle. For a positive function f of the state let u_j = Q^j 1 and
- * w_j = Q^j f: the average of f after t + j steps, given no exit until then, is a weighted mean of w_j / u_j over the places (of the phase
- * of t), for every t; so is its limit. Backwards the ratios close in on each other as the law forgets where it was.
+ * note [long-run bracket] Forwards from the start, normalised each period, until the masses settle. For a positive
+ * function f of the state let u_j = Q^j 1 and w_j = Q^j f: the average of f after t + j steps, given no exit until
+ * then, is a weighted mean of w_j / u_j over the places (of the phase of t), for every t; so is its limit. Backwards
+ * the ratios close in on each other as the law forgets where it was.
  *
- * A limit that is only crept up to like 1/t (stages that follow one another with equal rates) is of no use, and refused.
+ * A limit that is only crept up to like 1/t (stages that follow one another with equal rates) is of no use, and
+ * refused.
  * Source: quasi-stationary laws, Darroch & Seneta (1965), J. Appl. Probab. 2:88.
  */
 import type { Automaton } from "../machine/automaton.ts";
@@ -28,8 +30,8 @@ const SETTLED = 4e-15;
 const ROUNDING = 1e-12;
 
 /**
- * The conditional long-run state from the start for runs that end at the first event `kindOf` makes of an output, or why there
- * is none. States are those of `viewOf(automaton, kindOf)`.
+ * The conditional long-run state from the start for runs that end at the first event `kindOf` makes of an output, or
+ * why there is none. States are those of `viewOf(automaton, kindOf)`.
  */
 export function longRunLaw(
   automaton: Automaton,

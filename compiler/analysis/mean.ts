@@ -1,11 +1,13 @@
 /**
- * Mean cost until exit, for every place of an absorbing chain, with proven error bounds. In: a plan, a chain. Out: by place,
- * the mean number of steps until an exit and a bound of its relative error; infinite where the exit is not certain.
+ * Mean cost until exit, for every place of an absorbing chain, with proven error bounds. In: a plan, a chain. Out: by
+ * place, the mean number of steps until an exit and a bound of its relative error; infinite where the exit is not
+ * certain.
  *
- * Class by class in reverse topological order. Within a class x_r = h_r / g_r at the anchor r (see note [cycle certificate]),
- * then the other places given that. Where a class leads to others, x = B + the solution with costs 1 + sum q_ij (x_j - B), B the
- * least value any of its exits has: what was found downstream then weighs as it should, and errors do not pile up over
- * many classes. The bound of a place: the largest downstream, plus the class's own times 1 - B / x, plus a rounding.
+ * Class by class in reverse topological order. Within a class x_r = h_r / g_r at the anchor r (see note [cycle
+ * certificate]), then the other places given that. Where a class leads to others, x = B + the solution with costs 1 +
+ * sum q_ij (x_j - B), B the least value any of its exits has: what was found downstream then weighs as it should, and
+ * errors do not pile up over many classes. The bound of a place: the largest downstream, plus the class's own times 1
+ * - B / x, plus a rounding.
  *
  * Cost: two solutions a class, one certificate; two more where a place other than the anchor is asked for.
  * Source: the anchor's renewal equation, Kemeny & Snell (1960), *Finite Markov Chains*, 6.1; bounds proven here.
@@ -29,8 +31,8 @@ const REFINE_ABOVE = 4e-13;
 const LARGEST_BOUND = 1e-12;
 
 /**
- * The means of all places, or with `needed` (a place) of that one and all it takes: the other places of the last class are
- * then NaN if it is the anchor.
+ * The means of all places, or with `needed` (a place) of that one and all it takes: the other places of the last
+ * class are then NaN if it is the anchor.
  */
 export function meanSteps(system: System, needed: number | null): Means {
   if (!system.options.refine) return solveMeans(system, needed, Number.POSITIVE_INFINITY);
@@ -117,12 +119,13 @@ function combineBounds(base: { value: number; bound: number }, value: number, ow
 }
 
 /**
- * The least value among the places class k can go to next, 0 if it can exit at once, and the worst of their bounds. Infinite
- * when some next place is, or when there is none.
+ * The least value among the places class k can go to next, 0 if it can exit at once, and the worst of their bounds.
+ * Infinite when some next place is, or when there is none.
  */
 function leastBeyond(chain: Chain, k: number, { steps, bound }: Means): { value: number; bound: number } {
   const { classStart, rowStart, rowLeave, target, exitSet, markSet } = chain.shape;
   let [least, worst, any] = [Number.POSITIVE_INFINITY, 0, false];
+  if (chain.shape.classCount === 1) return { value: chain.shape.markSet.some(isSet) ? 0 : least, bound: 0 };
   for (let i = classStart[k]!; i < classStart[k + 1]!; i++) {
     if (exitSet[i] !== 0) any = true;
     if (markSet[i] !== 0) least = 0;
@@ -136,6 +139,10 @@ function leastBeyond(chain: Chain, k: number, { steps, bound }: Means): { value:
   return { value: any ? least : Number.POSITIVE_INFINITY, bound: worst };
 }
 
+function isSet(set: number): boolean {
+  return set !== 0;
+}
+
 /** cost = 1 + sum over the moves to earlier classes of q (x - base). */
 function writeCosts(
   chain: Chain,
@@ -145,13 +152,14 @@ function writeCosts(
   base: number,
   cost: DoubleDoubles,
 ): void {
-  const { rowStart, rowLeave, target, moveSet } = chain.shape;
+  const { rowStart, rowLeave, target, moveSet, classCount } = chain.shape;
   const { high, low } = chain.setSums;
+  cost.high.fill(1, first, anchor + 1);
+  cost.low.fill(0, first, anchor + 1);
+  if (classCount === 1) return;
   const sum: Accumulator = new Float64Array(2);
   const difference: Accumulator = new Float64Array(2);
   for (let i = first; i <= anchor; i++) {
-    cost.high[i] = 1;
-    cost.low[i] = 0;
     if (rowLeave[i] === rowStart[i + 1]) continue;
     sum[0] = 1;
     sum[1] = 0;
@@ -234,5 +242,7 @@ function solveRest(solver: ClassSolver, work: Workspace, refineAbove: number): v
   for (let i = first; i < anchor; i++) worst = Math.max(worst, bounds[i]!);
   if (refineAbove < Number.POSITIVE_INFINITY && (!proven || worst > refineAbove))
     proven = refineOthers(solver, cost, values, weight, bounds) || proven;
-  for (let i = first; i < anchor; i++) bounds[i] = proven ? bounds[i]! + bounds[anchor]! : Number.NaN;
+  const own = bounds[anchor]!;
+  for (let i = first; i < anchor; i++)
+    bounds[i] = proven ? (bounds[i]! + own + bounds[i]! * own) * (1 + 1e-9) : Number.NaN;
 }

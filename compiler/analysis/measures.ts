@@ -124,12 +124,13 @@ function around(value: number, relative: number, reason: string | null): Measure
   return { value, low: value * Math.max(0, 1 - relative), high: value * (1 + relative), reason: null };
 }
 
-/** Why a mean is infinite: the signal is not certain. */
+/** Why a mean has no finite number: the signal is not certain, or the number is too large. */
 export function infinityOf(lengths: RunLengths): string | null {
   const ever = lengths.everProbability();
   if (ever === 0) return "it is never raised under this process";
-  const never = lengths.neverProbability();
-  return never === 0
+  if (lengths.neverProbability() > 0)
+    return `it is not certain to be raised: with chance ${Number(ever.toPrecision(6))} it ever is`;
+  return Number.isFinite(lengths.mean())
     ? null
-    : `it is not certain to be raised: the chance that it ever is, is ${Number(ever.toPrecision(6))}`;
+    : "it is certain, but takes more trials than a double can hold (1.8e308)";
 }

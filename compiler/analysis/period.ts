@@ -1,6 +1,6 @@
 /**
- * The period of a chain seen from where it begins: the largest d for which every place can be given a phase 0 to d - 1 such
- * that each move leads from a phase to the next. Blocks of n trials make d = n; most chains have d = 1.
+ * The period of a chain seen from where it begins: the largest d for which every place can be given a phase 0 to d -
+ * 1 such that each move leads from a phase to the next. Blocks of n trials make d = n; most chains have d = 1.
  *
  * Source: Denardo (1977), "Periods of connected networks", Math. Oper. Res. 2:20.
  */

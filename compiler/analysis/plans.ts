@@ -1,7 +1,7 @@
 /**
- * Plans kept for one automaton and one kind of transition: skeletons by the columns that can occur and the states to begin from,
- * shapes by the anchors that the probabilities choose. A sweep of a process thus compiles a handful of shapes, and each
- * question gets the plan that its own probabilities choose, whatever was asked before.
+ * Plans kept for one automaton and one kind of transition: skeletons by the columns that can occur and the states to
+ * begin from, shapes by the anchors that the probabilities choose. A sweep of a process thus compiles a handful of
+ * shapes, and each question gets the plan that its own probabilities choose, whatever was asked before.
  */
 import type { Automaton } from "../machine/automaton.ts";
 import {

@@ -1,10 +1,12 @@
 /**
- * The law of the steps until exit of a small chain at any n, by powers of its matrix in double-double: for chains whose hazard
- * never settles (stages that follow one another with equal rates) and for integers that double precision leaves open.
+ * The law of the steps until exit of a small chain at any n, by powers of its matrix in double-double: for chains
+ * whose hazard never settles (stages that follow one another with equal rates) and for integers that double precision
+ * leaves open.
  *
- * R is Q with one more place for those that have exited; R^(2^k) by repeated squaring, only non-negative terms added. Relative error
- * of R^n: n (3 N + 8) 2^-106. Shares are taken of the whole row: probabilities that add up to 1 + 1e-17 only would grow by
- * that much a step. Cost: N^3 products a squaring (an eighth of it for stages in a row), N at most `MOST_PLACES`.
+ * R is Q with one more place for those that have exited; R^(2^k) by repeated squaring, only non-negative terms added.
+ * Relative error of R^n: n (3 N + 8) 2^-106. Shares are taken of the whole row: probabilities that add up to 1 +
+ * 1e-17 only would grow by that much a step. Cost: N^3 products a squaring (an eighth of it for stages in a row), N
+ * at most `MOST_PLACES`.
  */
 import type { DoubleDouble } from "../chance/double-double.ts";
 import type { Chain } from "./chain.ts";
@@ -112,8 +114,8 @@ export function exitedByPowers(powers: Powers, n: number): Estimate {
 }
 
 /**
- * The smallest n with P(T <= n) >= q, by descent through the powers; null where double-double cannot tell or n is above 2^52.
- * q is right to 2^-104.
+ * The smallest n with P(T <= n) >= q, by descent through the powers; null where double-double cannot tell or n is
+ * above 2^52. q is right to 2^-104.
  */
 export function quantileByPowers(powers: Powers, q: DoubleDouble): number | null {
   const { size } = powers;

@@ -1,9 +1,10 @@
 /**
- * Whole numbers from the law: quantiles decided by the first means that can. In: a law, the question. Out: the smallest n
- * with P(T <= n) >= q, as an interval of whole numbers that are one number when it is decided.
+ * Whole numbers from the law: quantiles decided by the first means that can. In: a law, the question. Out: the
+ * smallest n with P(T <= n) >= q, as an interval of whole numbers that are one number when it is decided.
  *
- * In turn: the proven interval of the law; for small chains powers in double-double; for exact probabilities, whole-number
- * arithmetic, which alone decides a tie such as P(T <= 15) = 1/2. What none of them decides stays an interval.
+ * In turn: the proven interval of the law; for small chains powers in double-double; for exact probabilities,
+ * whole-number arithmetic, which alone decides a tie such as P(T <= 15) = 1/2. What none of them decides stays an
+ * interval.
  */
 import Fraction from "fraction.js";
 import { doubleDoubleOf, doubleOf } from "../chance/quantity.ts";
@@ -26,7 +27,10 @@ const WIDE = 1e-11;
 /** The largest n whose neighbours are whole numbers of a double. */
 const MOST_TRIALS = 2 ** 52;
 
-/** The distribution of a law; `exact` are the column probabilities as fractions and `single` the one starting place, or null. */
+/**
+ * The distribution of a law; `exact` are the column probabilities as fractions and `single` the one starting place,
+ * or null.
+ */
 export function distributionOf(
   law: Law,
   start: StartLaw,

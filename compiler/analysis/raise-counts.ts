@@ -1,12 +1,12 @@
 /**
- * How often events come: their mean number among the first n steps, and their share in the long run. In: an automaton, what an
- * event is, column probabilities, where it begins. Out: values with intervals. Nothing is absorbing here: the chain goes
- * on through every event.
+ * How often events come: their mean number among the first n steps, and their share in the long run. In: an
+ * automaton, what an event is, column probabilities, where it begins. Out: values with intervals. Nothing is
+ * absorbing here: the chain goes on through every event.
  *
- * Mean number: a_t = P^t s backwards, s the one-step chance; for all later times the chance lies between the least and the
- * largest a_M (of the phase), which close in on the rate; beyond M the sum grows by that much a step (as in note
- * [hazard bracket]). Chains that mix slowly are bounded by their advances too: n rate + a start's advance less one between the
- * least and the largest (closed-classes.ts); the narrower of the two intervals counts.
+ * Mean number: a_t = P^t s backwards, s the one-step chance; for all later times the chance lies between the least
+ * and the largest a_M (of the phase), which close in on the rate; beyond M the sum grows by that much a step (as in
+ * note [hazard bracket]). Chains that mix slowly are bounded by their advances too: n rate + a start's advance less
+ * one between the least and the largest (closed-classes.ts); the narrower of the two intervals counts.
  */
 import type { Automaton } from "../machine/automaton.ts";
 import { type Chain, fillChain, markTransitions } from "./chain.ts";
@@ -38,8 +38,8 @@ const NARROW = 1e-12;
 const plansOf = new WeakMap<Automaton, Plans>();
 
 /**
- * The long-run share of steps with an event, as `kindOf` tells. The interval is proven where all states end in one closed
- * class (with several, right to 1e-12), and 1e-12 wide or less for most chains.
+ * The long-run share of steps with an event, as `kindOf` tells. The interval is proven where all states end in one
+ * closed class (with several, right to 1e-12), and 1e-12 wide or less for most chains.
  */
 export function raiseRate(
   automaton: Automaton,
@@ -84,7 +84,9 @@ function prepare(
   return { system, law: placeLaw(plan.shape, start) };
 }
 
-/** The number by the rate and the advances; from nothing to all where the law does not begin in the one closed class. */
+/**
+ * The number by the rate and the advances; from nothing to all where the law does not begin in the one closed class.
+ */
 function countByAdvances(system: System, law: StartLaw, n: number): Estimate {
   const { classStart } = system.chain.shape;
   const closed = findClosedClasses(system);

@@ -3,9 +3,10 @@
  * solution improved by what the residuals say, until the bound is small. In: a class's solver, costs and gains in
  * double-double, a solution in double. Out: the anchor's value (or the others') and a bound of its relative error.
  *
- * Needed where cycles are long (`2000 a`, a lockout of 5,000 trials): there already the rounding of the probabilities costs
- * cycle length times u. One or two steps reach 1e-26; the double printed is then right to its last place.
- * Source: iterative refinement, Wilkinson (1963), *Rounding Errors in Algebraic Processes*; see note [cycle certificate].
+ * Needed where cycles are long (`2000 a`, a lockout of 5,000 trials): there already the rounding of the probabilities
+ * costs cycle length times u. One or two steps reach 1e-26; the double printed is then right to its last place.
+ * Source: iterative refinement, Wilkinson (1963), *Rounding Errors in Algebraic Processes*; see note [cycle
+ * certificate].
  */
 import { divide } from "../chance/double-double.ts";
 import { boundOthers, boundRatio, type CycleSolution, SMALLEST } from "./certificate.ts";
@@ -37,8 +38,8 @@ type Residuals = {
 };
 
 /**
- * The residuals base + Q' y - l y of class k, with the largest against `scale` (by place). With `withAnchor` the moves to the
- * anchor count and the anchor's own row does not.
+ * The residuals base + Q' y - l y of class k, with the largest against `scale` (by place). With `withAnchor` the
+ * moves to the anchor count and the anchor's own row does not.
  */
 function residuals(
   solver: ClassSolver,
@@ -174,8 +175,8 @@ export function weightExcess(
 }
 
 /**
- * The values of the places of class k other than the anchor, whose value stands in `values`, refined in place; bounds of
- * their relative errors, the anchor's taken as exact, go into `bounds`. False where nothing is proven.
+ * The values of the places of class k other than the anchor, whose value stands in `values`, refined in place; bounds
+ * of their relative errors, the anchor's taken as exact, go into `bounds`. False where nothing is proven.
  */
 export function refineOthers(
   solver: ClassSolver,

@@ -1,10 +1,11 @@
 /**
- * The room's face: what there is to know of the number of trials until a machine's output first satisfies a predicate.
- * In: an automaton, the predicate, column probabilities, where the machine begins. Out: mean with a proven bound, standard
- * deviation, the chance that it ever happens, the law, quantiles; each found when first asked for and then kept.
+ * The room's face: what there is to know of the number of trials until a machine's output first satisfies a
+ * predicate. In: an automaton, the predicate, column probabilities, where the machine begins. Out: mean with a proven
+ * bound, standard deviation, the chance that it ever happens, the law, quantiles; each found when first asked for and
+ * then kept.
  *
- * `prepareRunLengths` is for one machine and predicate; its shapes, orders and compiled eliminations serve every choice of
- * probabilities, so that a sweep of a process costs little more than its arithmetic.
+ * `prepareRunLengths` is for one machine and predicate; its shapes, orders and compiled eliminations serve every
+ * choice of probabilities, so that a sweep of a process costs little more than its arithmetic.
  */
 import type Fraction from "fraction.js";
 import { InternalError } from "../../grammar/internal-error.ts";
@@ -40,11 +41,14 @@ export type RunLengths = {
   /** Mean run length in trials; Infinity where the signal is not certain. */
   readonly mean: () => number;
   /**
-   * A proven bound of the mean's relative error for the probabilities as given (and, from a long-run law, for that law); null
-   * where none is proven or the mean is infinite.
+   * A proven bound of the mean's relative error for the probabilities as given (and, from a long-run law, for that
+   * law); null where none is proven or the mean is infinite.
    */
   readonly relativeErrorBound: () => number | null;
-  /** The mean as an exact fraction; null unless the probabilities are exact, the start is one state and the work is small. */
+  /**
+   * The mean as an exact fraction; null unless the probabilities are exact, the start is one state and the work is
+   * small.
+   */
   readonly exactMean: () => Fraction | null;
   /** Standard deviation in trials, right to 1e-10; Infinity where the signal is not certain. */
   readonly standardDeviation: () => number;
@@ -66,8 +70,8 @@ export type RunLengthSolver = {
 };
 
 /**
- * A solver for runs that end at the first event: the first transition whose output `kindOf` makes one of. States, in the law a
- * run begins from, are those of `viewOf(automaton, kindOf)`.
+ * A solver for runs that end at the first event: the first transition whose output `kindOf` makes one of. States, in
+ * the law a run begins from, are those of `viewOf(automaton, kindOf)`.
  */
 export function prepareRunLengths(
   automaton: Automaton,

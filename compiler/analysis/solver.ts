@@ -1,7 +1,7 @@
 /**
- * One class of a chain, ready to be solved: y = c + Q' y (a cycle, the anchor's column left out) or, with the anchor's value
- * given, y = c + Q y at the other places. By compiled elimination where that is cheap, else by sweeps; which of the two
- * depends on the shape alone, so that equal questions have equal answers to the last bit.
+ * One class of a chain, ready to be solved: y = c + Q' y (a cycle, the anchor's column left out) or, with the
+ * anchor's value given, y = c + Q y at the other places. By compiled elimination where that is cheap, else by sweeps;
+ * which of the two depends on the shape alone, so that equal questions have equal answers to the last bit.
  */
 import type { Chain, Shape } from "./chain.ts";
 import { contractClass } from "./contraction.ts";
@@ -30,7 +30,10 @@ export type SolverOptions = {
 
 export const DEFAULT_OPTIONS: SolverOptions = { elimination: true, limits: TO_THE_LAST, refine: true };
 
-/** Class k under given probabilities. Costs and results are by place of the chain; only those of the class are touched. */
+/**
+ * Class k under given probabilities. Costs and results are by place of the chain; only those of the class are
+ * touched.
+ */
 export type ClassSolver = {
   readonly chain: Chain;
   readonly k: number;

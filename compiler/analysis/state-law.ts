@@ -1,6 +1,6 @@
 /**
- * Where a chain begins: a probability law over the states of an automaton, with what is proven of its averages. In: states
- * and weights. Out: the same by place of a chain, averages with intervals.
+ * Where a chain begins: a probability law over the states of an automaton, with what is proven of its averages. In:
+ * states and weights. Out: the same by place of a chain, averages with intervals.
  */
 import type { Shape } from "./chain.ts";
 
@@ -14,8 +14,8 @@ export type StateLaw = {
   /** By the same index, not negative, adding up to 1. */
   readonly weights: Float64Array;
   /**
-   * An interval that holds the average of values (positive, in the order of `states`) over the true law, of which `weights` are an
-   * approximation; null for a law that is exactly its weights.
+   * An interval that holds the average of values (positive, in the order of `states`) over the true law, of which
+   * `weights` are an approximation; null for a law that is exactly its weights.
    */
   readonly bracket: ((values: Float64Array) => { readonly low: number; readonly high: number }) | null;
 };

@@ -1,14 +1,14 @@
 /**
- * Cycle iteration: Gauss-Seidel sweeps, in the order of the places, on y = c + Q' y for one class of a chain, Q' being the
- * moves within the class with those to the anchor left out. Only non-negative numbers are added where the costs are
- * non-negative. Every ninth sweep the last change is extrapolated (Aitken); that needs no proof, since whatever comes out
- * is certified afterwards (certificate.ts).
+ * Cycle iteration: Gauss-Seidel sweeps, in the order of the places, on y = c + Q' y for one class of a chain, Q'
+ * being the moves within the class with those to the anchor left out. Only non-negative numbers are added where the
+ * costs are non-negative. Every ninth sweep the last change is extrapolated (Aitken); that needs no proof, since
+ * whatever comes out is certified afterwards (certificate.ts).
  *
  * Cost: one sweep looks at each move once; 5 to 60 sweeps for chains whose cycles are short.
  * Source: Stewart (1994), *Introduction to the Numerical Solution of Markov Chains*, 3.2 and 3.3.
  */
 import type { Chain } from "./chain.ts";
-import { type Contraction, carryCosts, spreadValues } from "./contraction.ts";
+import { type Contraction, carryCosts, readKept, spreadValues } from "./contraction.ts";
 
 export type SweepLimits = {
   readonly most: number;
@@ -26,8 +26,8 @@ const NOISE = 4e-16;
 const LONGEST_STEP = 1e6;
 
 /**
- * Solves y = c + Q' y for one or two costs at once on the class of the rows; costs and results are by place of the chain. What
- * stands in `intos` is the first guess. Returns the number of sweeps.
+ * Solves y = c + Q' y for one or two costs at once on the class of the rows; costs and results are by place of the
+ * chain. What stands in `intos` is the first guess. Returns the number of sweeps.
  */
 export function solveBySweeps(
   chain: Chain,
@@ -39,9 +39,7 @@ export function solveBySweeps(
   const lanes = costs.length === 2 ? 2 : 1;
   const carried = carryCosts(rows, costs);
   const values = new Float64Array(carried.length);
-  for (let i = 0; i < rows.kept.length; i++)
-    for (let lane = 0; lane < lanes; lane++)
-      values[lanes * i + lane] = intos[lane]![rows.first + rows.kept[i]!]!;
+  for (let lane = 0; lane < lanes; lane++) readKept(rows, intos[lane]!, values, lanes, lane);
   const sweeps = sweep(rows, carried, values, lanes, limits);
   for (let lane = 0; lane < lanes; lane++)
     spreadValues(chain, rows, values, lanes, lane, costs[lane]!, intos[lane]!);
@@ -49,8 +47,8 @@ export function solveBySweeps(
 }
 
 /**
- * Sweeps `lanes` systems at once, 1 or 2: values and costs of one kept place stand side by side; costs are divided by what
- * leaves the place. `values` is the first guess and becomes the result. Returns the number of sweeps.
+ * Sweeps `lanes` systems at once, 1 or 2: values and costs of one kept place stand side by side; costs are divided by
+ * what leaves the place. `values` is the first guess and becomes the result. Returns the number of sweeps.
  */
 function sweep(
   rows: Contraction,
@@ -127,8 +125,8 @@ function largestChange(before: Float64Array, values: Float64Array): number {
 }
 
 /**
- * How many times the last change is still to come in one lane, if each change is the same multiple of the one before: the
- * multiple that fits the last two best, each relative to the value. 0 where no such multiple is below 1.
+ * How many times the last change is still to come in one lane, if each change is the same multiple of the one before:
+ * the multiple that fits the last two best, each relative to the value. 0 where no such multiple is below 1.
  */
 function stepFurther(
   earlier: Float64Array,

@@ -1,10 +1,10 @@
 /**
- * Expected totals until exit: for a cost by place, what a chain from each place is expected to pay until it exits. In: a
- * system, non-negative costs. Out: by place, the total. With the exit probabilities of one kind as costs it is the chance
- * of that kind; with the conditional variances, the variance.
+ * Expected totals until exit: for a cost by place, what a chain from each place is expected to pay until it exits.
+ * In: a system, non-negative costs. Out: by place, the total. With the exit probabilities of one kind as costs it is
+ * the chance of that kind; with the conditional variances, the variance.
  *
- * Only non-negative numbers are added, so that each total is right to about 1e-14 relative, whatever its size. A place that
- * cannot exit pays nothing (its class is left out); one that may end there pays until it does.
+ * Only non-negative numbers are added, so that each total is right to about 1e-14 relative, whatever its size. A
+ * place that cannot exit pays nothing (its class is left out); one that may end there pays until it does.
  * Source: Kemeny & Snell (1960), *Finite Markov Chains*, 3.3 and 6.1.
  */
 import { findGain, type System } from "./solver.ts";

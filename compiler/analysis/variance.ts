@@ -1,11 +1,11 @@
 /**
- * Variance of the number of steps until exit, as a sum of non-negative terms: each visit to a place adds the variance of
- * what the next step does to the mean that is left (law of total variance along the path; for martingale differences these
- * add up). In: a chain and the means by place. Out: the variances by place.
+ * Variance of the number of steps until exit, as a sum of non-negative terms: each visit to a place adds the variance
+ * of what the next step does to the mean that is left (law of total variance along the path; for martingale
+ * differences these add up). In: a chain and the means by place. Out: the variances by place.
  *
- * Unlike E T^2 - (E T)^2 this keeps its digits when the steps are nearly certain. Its own noise is that of differences of neighbouring
- * means, squared, once a step; it matters for means beyond 1e18, where T is never nearly certain and the second moment serves.
- * Relative error about 1e-12.
+ * Unlike E T^2 - (E T)^2 this keeps its digits when the steps are nearly certain. Its own noise is that of
+ * differences of neighbouring means, squared, once a step; it matters for means beyond 1e18, where T is never nearly
+ * certain and the second moment serves. Relative error about 1e-12.
  * Source: Kemeny & Snell (1960), *Finite Markov Chains*, 3.3.5, in the form of martingale differences.
  */
 import type { Chain } from "./chain.ts";

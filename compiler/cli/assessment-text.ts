@@ -75,7 +75,7 @@ function signalTable(policy: Policy, rows: readonly Row[]): string {
 /** Why a mean is infinite, once for each process where it is. */
 function notes(rows: readonly Row[]): string[] {
   return rows.flatMap((row) =>
-    row.reason ? [`  ${processWords(row)}: the ARL is infinite, since ${row.reason}`] : [],
+    row.reason ? [`  ${processWords(row)}: the ARL is not finite: ${row.reason}`] : [],
   );
 }
 
@@ -114,14 +114,15 @@ function short(value: number): string {
   return digits >= 1e-3 && digits < 1e9 ? `${digits}` : digits.toExponential();
 }
 
-/** A probability: as a percentage, with as many digits as a small one needs. */
+/** A probability as a percentage: three digits, two of a small one, and never all where a little is wanting. */
 function chance(p: number): string {
   if (p === 0) return "0 %";
   if (p === 1) return "100 %";
   const percent = p * 100;
   if (percent < 0.01) return `${Number(percent.toPrecision(2)).toExponential()} %`;
+  if (percent < 1) return `${percent.toPrecision(2)} %`;
   if (percent > 99.99) return "> 99.99 %";
-  return `${percent < 10 || percent > 99.9 ? percent.toFixed(2) : percent.toFixed(1)} %`;
+  return `${percent > 99.9 ? percent.toFixed(2) : percent.toPrecision(3)} %`;
 }
 
 /** The unit of time in which the rarest signal of the table still reads as a handy number. */

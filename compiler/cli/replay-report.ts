@@ -11,17 +11,12 @@ export type Reading = {
   readonly letters: readonly (string | null)[];
   readonly time: string | null;
   readonly stream: string | null;
-  /** Whether the detector took it as a trial; a reading that is refused or skipped is none. */
-  readonly isTrial: boolean;
 };
 
 export type Reporter = {
   readonly reading: (detector: Detector, raises: number, reading: Reading) => void;
   readonly end: (unfinishedRows: number) => void;
 };
-
-/** What is counted on the way: trials, readings that were refused or skipped, and raises of each signal. */
-type Totals = { trials: number; refused: number; skipped: number; raises: Map<string, number> };
 
 /** The reporter that the options ask for. */
 export function reporterFor(policy: Policy, options: { json?: true | undefined }): Reporter {
@@ -131,15 +126,15 @@ function reasonText({ rule, from, to, complete }: Reason): string {
   return from === to ? `${rule}, trial ${to}` : `${rule}, trials ${from} to ${to}`;
 }
 
-function summaryText({ trials, refused, skipped, raises }: Totals, unfinishedRows: number): string {
-  const counts = [...raises].map(([name, count]) => `${name} ${count}`).join(", ");
-  const parts = [counted(trials, "trial"), `signals raised: ${counts}`];
-  if (refused > 0) parts.push(`${counted(refused, "reading")} refused`);
-  if (skipped > 0) parts.push(`${counted(skipped, "reading")} skipped`);
-  if (unfinishedRows > 0) parts.push(`${counted(unfinishedRows, "row")} left in an unfinished subgroup`);
-  return parts.join("; ");
-}
-
-function counted(count: number, word: string): string {
-  return `${count} ${word}${count === 1 ? "" : "s"}`;
+function summaryText({ trials, refused, skipped, broken, raises }: Totals, unfinishedRows: number): string {
+  const counted = (amount: number, one: string, many: string, rest: string) =>
+    amount > 0 ? [`${amount} ${amount === 1 ? one : many}${rest}`] : [];
+  return [
+    `${trials} ${trials === 1 ? "trial" : "trials"}`,
+    `signals raised: ${[...raises].map(([name, amount]) => `${name} ${amount}`).join(", ")}`,
+    ...counted(refused, "reading", "readings", " refused"),
+    ...counted(skipped, "reading", "readings", " skipped"),
+    ...counted(broken, "trial", "trials", " broken by a missing value"),
+    ...counted(unfinishedRows, "row", "rows", " left in an unfinished subgroup"),
+  ].join("; ");
 }

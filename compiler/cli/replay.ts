@@ -61,7 +61,6 @@ function replayLetters(policy: Policy, streams: Streams, text: string, report: R
   const detector = streams.detectorOf(null);
   trials.forEach(({ symbol }, index) => {
     const letters = symbol === null ? policy.alphabets.map(() => -1) : lettersOf(policy, symbol);
-    const { trial } = detector;
     const raises = detector.observeLetter(...letters);
     report.reading(detector, raises, {
       row: index + 1,
@@ -69,7 +68,6 @@ function replayLetters(policy: Policy, streams: Streams, text: string, report: R
       letters: letters.map((letter, at) => policy.alphabets[at]?.letters[letter]?.name ?? null),
       time: null,
       stream: null,
-      isTrial: detector.trial > trial,
     });
   });
 }
@@ -125,14 +123,9 @@ async function replayData(
         throw new Stop(EXIT.findings);
       }
       const detector = streams.detectorOf(item.stream);
-      const { trial } = detector;
       const raises = detector.observe(...item.values);
       if (raises !== 0) progress.clear();
-      report.reading(detector, raises, {
-        ...item,
-        letters: lettersOfValues(detector, item.values),
-        isTrial: detector.trial > trial,
-      });
+      report.reading(detector, raises, { ...item, letters: lettersOfValues(detector, item.values) });
     }
   } catch (thrown) {
     if (!interrupted.yes)

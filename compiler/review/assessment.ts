@@ -79,11 +79,13 @@ export function assess(assessor: Assessor, questions: Questions): Outcome<Assess
   const letters: LetterRow[] = [];
   const runs: Row[] = [];
   const starts = new Map<SignalChoice, StateLaw>();
+  let before: Letters | null = null;
   if (questions.after) {
     for (const signal of signals) {
       const start = startFor(assessor, signal, questions.after);
       if (!start.value) return { diagnostics: start.diagnostics };
-      starts.set(signal, start.value);
+      starts.set(signal, start.value.law);
+      before = start.value.letters;
     }
   }
   for (const use of uses) {
@@ -103,6 +105,7 @@ export function assess(assessor: Assessor, questions: Questions): Outcome<Assess
             letters: found.value,
             after,
             start: starts.get(signal),
+            before,
             by: questions.by,
           }),
         );
@@ -123,12 +126,17 @@ function allSignals(policy: Policy): SignalChoice[] {
   return [...policy.signals.keys(), "any"];
 }
 
-function startFor(assessor: Assessor, signal: SignalChoice, after: ProcessUse): Outcome<StateLaw> {
+function startFor(
+  assessor: Assessor,
+  signal: SignalChoice,
+  after: ProcessUse,
+): Outcome<{ letters: Letters; law: StateLaw }> {
   const letters = assessor.lettersAt({ process: after.process, values: after.values ?? [] }, after.span);
   if (!letters.value) return { diagnostics: letters.diagnostics };
-  return longRunStart(assessor, signal, letters.value, (reason) =>
+  const { value: law, diagnostics } = longRunStart(assessor, signal, letters.value, (reason) =>
     diagnose("measure_undefined", after.span, `there is no long-run state to begin from: ${reason}`),
   );
+  return law ? { value: { letters: letters.value, law }, diagnostics } : { diagnostics };
 }
 
 type RowQuestion = {
@@ -137,6 +145,8 @@ type RowQuestion = {
   readonly letters: Letters;
   readonly after: string | null;
   readonly start: StateLaw | undefined;
+  /** The letters' chances of the process that `start` comes from. */
+  readonly before: Letters | null;
   readonly by: readonly number[];
 };
 
@@ -171,13 +181,14 @@ function withinTrials(lengths: RunLengths, by: readonly number[]): Record<string
   return Object.fromEntries(trials.map((n) => [`${n}`, lengths.signalled(n).value]));
 }
 
-/** The chance of each rule to be a cause of the first raise; from the start only. */
-function firstOf(assessor: Assessor, { signal, letters, start }: RowQuestion): Record<string, number> | null {
-  if (start) return null;
+/** The chance of each rule to be a cause of the first raise. */
+function firstOf(assessor: Assessor, question: RowQuestion): Record<string, number> | null {
+  const { signal, letters, before } = question;
   const machine = assessor.attributed();
   if (!machine) return null;
-  const columns = assessor.columnsAt(letters, machine.columnOf, machine.columns);
-  const found = firstCauses(machine, signal, columns);
+  const columnsAt = (at: Letters) => assessor.columnsAt(at, machine.columnOf, machine.columns);
+  const found = firstCauses(machine, signal, columnsAt(letters), before ? columnsAt(before) : undefined);
+  if (!found) return null;
   const names = conditionNames(assessor.policy, signal).filter((name) => name in found);
   return Object.fromEntries(names.map((name) => [name, found[name] ?? 0]));
 }

@@ -1,5 +1,5 @@
-// Published values and closed forms. "From memory" says that the value was recalled and confirmed by an independent exact
-// computation, not read in a copy of the source.
+// Published values and closed forms. "From memory" says that the value was recalled and confirmed by an independent
+// exact computation, not read in a copy of the source.
 
 import Fraction from "fraction.js";
 import { describe, expect, test } from "vitest";
@@ -104,7 +104,8 @@ describe("words of a fair coin (Feller XIII.8; Li 1980; Graham, Knuth & Patashni
   }
 
   test.each([
-    // OEIS A238644; Penney (1969), J. Recreational Math. 2:241; Guibas & Odlyzko (1981), J. Comb. Theory A 30:183 (seen).
+    // OEIS A238644; Penney (1969), J. Recreational Math. 2:241; Guibas & Odlyzko (1981), J. Comb. Theory A 30:183
+    // (seen).
     ["THTH", "HTHH", 9n, 14n],
     ["HTT", "TTT", 7n, 8n],
     ["THH", "HHT", 3n, 4n],

@@ -1,4 +1,5 @@
-// The exact mean against whole-number elimination of the test's own and against mathjs; mathjs as a witness of the doubles.
+// The exact mean against whole-number elimination of the test's own and against mathjs; mathjs as a witness of the
+// doubles.
 
 import Fraction from "fraction.js";
 import { create, fractionDependencies, lusolveDependencies } from "mathjs";

@@ -1,6 +1,7 @@
 /**
- * Small machines made by hand for the tests of the analysis, each from the definition of its rule and not by the compiler.
- * Column 0 is the letter the rule is about unless said otherwise; output 1 is the raise, after which the machine begins anew.
+ * Small machines made by hand for the tests of the analysis, each from the definition of its rule and not by the
+ * compiler. Column 0 is the letter the rule is about unless said otherwise; output 1 is the raise, after which the
+ * machine begins anew.
  */
 
 import type { ColumnProbabilities } from "../../compiler/analysis/run-lengths.ts";
@@ -71,7 +72,9 @@ export function rawScan(k: number, m: number): Automaton {
   });
 }
 
-/** Weak run: k successes (column 0), between neighbours at most `gap` failures (column 1) and nothing else (column 2). */
+/**
+ * Weak run: k successes (column 0), between neighbours at most `gap` failures (column 1) and nothing else (column 2).
+ */
 export function weakRun(k: number, gap: number): Automaton {
   return explore("0 0", 3, (state, column) => {
     const [count, failures] = state.split(" ").map(Number) as [number, number];
@@ -118,7 +121,10 @@ export function blockRun(k: number, n: number): Automaton {
   });
 }
 
-/** Output 1: k of column 0 in a row. Output 2: column 1, which then rests for `quiet` trials; the two know nothing of each other. */
+/**
+ * Output 1: k of column 0 in a row. Output 2: column 1, which then rests for `quiet` trials; the two know nothing of
+ * each other.
+ */
 export function withLockout(k: number, quiet: number): Automaton {
   return explore("0 0", 3, (state, column) => {
     const [length, rest] = state.split(" ").map(Number) as [number, number];
@@ -161,8 +167,8 @@ export function randomNumbers(seed: number): () => number {
 export type RandomCase = { readonly automaton: Automaton; readonly weights: readonly bigint[] };
 
 /**
- * A random machine all of whose states are reached from state 0 and are sure to end, and probabilities from common to as rare as
- * 1e-9. A few transitions raise; `rarity` from 0 to 1 makes the means longer.
+ * A random machine all of whose states are reached from state 0 and are sure to end, and probabilities from common to
+ * as rare as 1e-9. A few transitions raise; `rarity` from 0 to 1 makes the means longer.
  */
 export function randomMachine(random: () => number, mostStates: number, rarity: number): RandomCase {
   for (;;) {
@@ -210,12 +216,14 @@ function isSound({ states, columns, next, output }: Automaton): boolean {
   return hopeful.size === states;
 }
 
-/** The upper side's and the lower side's trackers of the zone tests, each as the ages of its successes, oldest first. */
+/**
+ * The upper side's and the lower side's trackers of the zone tests, each as the ages of its successes, oldest first.
+ */
 type Zone = { readonly count: number; readonly window: number; readonly holds: (letter: number) => boolean };
 
 /**
- * The zone tests of Western Electric (1956) over eight letters, cut at -3, -2, -1, 0, 1, 2, 3; `tests` names some of C1 to C4 as Champ &
- * Woodall (1987) do. One signal, after which all begins anew.
+ * The zone tests of Western Electric (1956) over eight letters, cut at -3, -2, -1, 0, 1, 2, 3; `tests` names some of
+ * C1 to C4 as Champ & Woodall (1987) do. One signal, after which all begins anew.
  */
 export function zoneTests(tests: readonly ("C1" | "C2" | "C3" | "C4")[]): Automaton {
   const sides = (count: number, window: number, depth: number): Zone[] => [

@@ -99,7 +99,8 @@ describe("mean number among n", () => {
   });
 
   test("among 1e15 trials: the rate, less what the start costs", () => {
-    // Two in a row at 1/10: raises renew, so the mean number is n / m + (s^2 + m - m^2 ...) / (2 m^2) - 1 + …; to 1e-14 it is n / m.
+    // Two in a row at 1/10: raises renew, so the mean number is n / m + (s^2 + m - m^2 ...) / (2 m^2) - 1 + …; to
+    // 1e-14 it is n / m.
     const { value, low, high } = countRaises(run(2), anyOutput, probabilitiesOf([1n, 9n]), 1e15);
     expect(value / (1e15 / 110)).toBeCloseTo(1, 12);
     expect(high - low).toBeLessThan(1e-12 * value);
@@ -126,11 +127,11 @@ describe("first causes", () => {
       ],
     };
     const chances = probabilitiesOf([1n, 2n, 5n]);
-    const first = firstCauses(automaton, 0, chances);
+    const first = firstCauses(automaton, 0, chances)!;
     expect(Object.keys(first)).toEqual(["heavy", "swing"]);
     expect(first.heavy).toBeCloseTo(1, 14);
     expect(first.swing).toBeCloseTo(2 / 3, 14);
-    const any = firstCauses(automaton, "any", chances);
+    const any = firstCauses(automaton, "any", chances)!;
     expect(any.light).toBeCloseTo(5 / 8, 14);
     expect(any.heavy).toBeCloseTo(3 / 8, 14);
   });
@@ -145,7 +146,7 @@ describe("first causes", () => {
         broken: null,
         attributions: [[], ...["one", "two", "three"].map((condition) => [{ signal: 0, condition }])],
       };
-      const first = firstCauses(attributed, 0, probabilitiesOf(weights));
+      const first = firstCauses(attributed, 0, probabilitiesOf(weights))!;
       for (const [kind, name] of ["one", "two", "three"].entries()) {
         const exact = exactEndings(
           plain(automaton, -1),

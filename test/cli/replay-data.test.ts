@@ -48,7 +48,7 @@ describe("an empty cell, under each policy for missing values", () => {
       "trial 2  row 3  x 3 high  s — 2 high, trials 1 to 2\n2 trials; signals raised: s 1; 1 reading skipped\n",
       "stays",
     ],
-    ["missing break", "3 trials; signals raised: s 0\n", "clears memory"],
+    ["missing break", "3 trials; signals raised: s 0; 1 trial broken by a missing value\n", "clears memory"],
     [
       "missing x: as high",
       "trial 2  row 2  x missing high  s — 2 high, trials 1 to 2\n3 trials; signals raised: s 1\n",

@@ -46,7 +46,7 @@ trial 7  row 8  08:17  heat 96 low  look — 2 low, trials 6 to 7
     write("doors.csv", 'heat,door,where\n-1,S,"north ""1"""\n-2,O,"north ""1"""\n1,O,south\n-3,open,south\n');
     expect(tocsin(["replay", "door.tocsin", "doors.csv", "--stream", "where"]).stdout).toBe(
       `north "1"  trial 2  row 2  heat -2 cold  door O open  draught, ajar — 2 cold, trials 1 to 2; cold & open, trial 2
-south  trial 2  row 4  heat -3 cold  door open open  ajar — cold & open, trial 2
+south  trial 2  row 4  heat -3 cold  door open  ajar — cold & open, trial 2
 4 trials; signals raised: draught 1, ajar 2
 `,
     );
@@ -90,7 +90,14 @@ describe("JSON lines", () => {
           because: [{ signal: "look", rule: "2 low", trials: [6, 7], complete: true }],
         },
       ],
-      summary: { trials: 8, refused: 1, skipped: 0, unfinishedRows: 0, signals: { act: 1, look: 1 } },
+      summary: {
+        trials: 8,
+        refused: 1,
+        skipped: 0,
+        broken: 0,
+        unfinishedRows: 0,
+        signals: { act: 1, look: 1 },
+      },
     });
   });
 
@@ -106,6 +113,7 @@ describe("JSON lines", () => {
       trials: 6,
       refused: 0,
       skipped: 0,
+      broken: 0,
       unfinishedRows: 0,
       signals: { act: 2, look: 0 },
     });

@@ -1,6 +1,6 @@
 /**
- * Run-length facts of a finite automaton in exact whole numbers, by the plainest means: Bareiss elimination on D I - M, and
- * path counts carried forwards. Slow, for machines of a few dozen states. Written from the definitions alone.
+ * Run-length facts of a finite automaton in exact whole numbers, by the plainest means: Bareiss elimination on D I -
+ * M, and path counts carried forwards. Slow, for machines of a few dozen states. Written from the definitions alone.
  *
  * A machine here is `next` and `ends` by state * columns + column, state 0 the start; column c has probability
  * weights[c] / sum of the weights.
@@ -65,7 +65,9 @@ function system(machine: PlainMachine, weights: readonly bigint[]): bigint[][] {
   });
 }
 
-/** By state, the mean and the variance of the number of trials until the run ends; every state must be sure to end. */
+/**
+ * By state, the mean and the variance of the number of trials until the run ends; every state must be sure to end.
+ */
 export function exactMoments(
   machine: PlainMachine,
   weights: readonly bigint[],
