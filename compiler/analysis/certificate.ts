@@ -1,15 +1,18 @@
 /**
  * What a computed solution of a class is worth, whoever computed it: relative error bounds from residuals.
  *
- * note [cycle certificate] Q' is Q within the class without the moves to the anchor r; l_i the own sum of all moves
- * but the loop, l_r = 1; c > 0 the cost of a visit, e the gain (what ends the cycles); N = (diag(l) - Q')^-1 >= 0; h
- * = Nc, g = Ne and x_r = h_r / g_r. For ANY h~, with residual s = c + Q'h~ - l h~, it is h~ - h = -N s, hence |h~ -
- * h| <= N|s| <= d_h N c = d_h h with d_h = max |s_i| / c_i. For any g~ >= 0 likewise |g~_r - g_r| <= d_g (N g~)_r
- * with d_g = max |s_i| / g~_i, and for any v >= 0 that leaves g~ + Q'v - l v <= eta g~, eta < 1, it is N g~ <= v / (1
- * - eta). So e_g = d_g v_r / ((1 - eta) g~_r) bounds the relative error of g~_r, and d_h + e_g (1 + d_h) that of h~_r
- * / g~_r. Residuals are computed in floating point; with w terms in a row they are wrong by at most k = (w + 4) u
- * times the sum of the sizes, which is added to each.
- * The other places, x_r given: the same as for g, with costs c_i + q_ir x_r.
+ * note [cycle certificate]
+ * Q' is Q within the class without the moves to the anchor r; l_i the own sum of all moves but the loop, l_r = 1;
+ * c > 0 the cost of a visit, e >= 0 the gain (what ends the cycles); N = (diag(l) - Q')^-1 >= 0; h = Nc, g = Ne;
+ * the anchor's value is x_r = h_r / g_r.
+ * For ANY h~, with residual s = c + Q'h~ - l h~: h~ - h = -N s, hence |h~ - h| <= N|s| <= d_h N c = d_h h with
+ * d_h = max |s_i| / c_i.
+ * For ANY g~ >= 0 likewise |g~_r - g_r| <= d_g (N g~)_r with d_g = max |s_i| / g~_i; and for ANY v >= 0 that
+ * leaves g~ + Q'v - l v <= eta g~ with eta < 1, N g~ <= v / (1 - eta). So e_g = d_g v_r / ((1 - eta) g~_r) bounds
+ * |g~_r - g_r| / g~_r, and d_h + e_g (1 + d_h) the relative error of h~_r / g~_r.
+ * The other places, x_r given: as for g, with costs c_i + q_ir x_r.
+ * Residuals are computed in floating point; with w moves in a row they are wrong by at most k = (w + 4) u times the
+ * sum of the sizes, which is added to each.
  *
  * Where g~_i = 0 the residuals must vanish. Underflow is not covered: values below 1e-270 are refused.
  */

@@ -2,7 +2,8 @@
  * The law of the number of steps T until exit: P(T <= n) for any n, from given starting places, with proven
  * intervals.
  *
- * note [hazard bracket] Backwards, with sums of non-negative terms only: u_t = Q^t 1 (alive after t steps) and w_t =
+ * note [hazard bracket]
+ * Backwards, with sums of non-negative terms only: u_t = Q^t 1 (alive after t steps) and w_t =
  * Q^t F_d (exit within the d steps after), d the chain's period. For every start and every later time n >= M, n = M
  * (mod d), the chance of an exit within d steps given none until n is a weighted mean of w_M / u_M over the places of
  * the phase of the start; so it lies between their minimum and maximum, which close in on each other geometrically.
@@ -13,7 +14,7 @@
  * everything stated.
  *
  * Chains whose bracket closes only like 1/t (stages that follow one another with equal rates) are iterated to the
- * limit of work; beyond it the intervals are wide, and say so.
+ * limit of work; beyond it the intervals are wide, and say so. (Small ones have powers.ts for that.)
  * Source: bounds of the Perron root by ratios, Collatz (1942), Math. Z. 48:221; their use for the law is proven
  * above.
  */

@@ -4,7 +4,8 @@
  * run, column probabilities. Out: the law over the states, with a proven interval for the average of any function of
  * the state.
  *
- * note [long-run bracket] Forwards from the start, normalised each period, until the masses settle. For a positive
+ * note [long-run bracket]
+ * Forwards from the start, normalised each period, until the masses settle. For a positive
  * function f of the state let u_j = Q^j 1 and w_j = Q^j f: the average of f after t + j steps, given no exit until
  * then, is a weighted mean of w_j / u_j over the places (of the phase of t), for every t; so is its limit. Backwards
  * the ratios close in on each other as the law forgets where it was.

@@ -49,7 +49,7 @@ test("a missing file is a usage error", () => {
   expect(tocsin(["format", "nowhere.tocsin"])).toMatchObject({ status: 2, stdout: "" });
 });
 
-test("changes no meaning: the machine file of every example is the same, the hash of its text too", () => {
+test("changes no meaning: the machine of a policy squeezed onto one line is the same", () => {
   const folder = join(ROOT, "examples/fill-weight");
   const [name = ""] = readdirSync(folder).filter((file) => file.endsWith(".tocsin"));
   const text = readFileSync(join(folder, name), "utf8");

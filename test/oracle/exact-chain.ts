@@ -18,7 +18,7 @@ export type PlainMachine = {
 export type Ratio = { readonly n: bigint; readonly d: bigint };
 
 /** The right sides' solutions of a square whole-number system, all over one common denominator (Bareiss 1968). */
-export function solveWhole(
+function solveWhole(
   matrix: readonly (readonly bigint[])[],
   rights: readonly (readonly bigint[])[],
 ): { solutions: bigint[][]; denominator: bigint } {
