@@ -245,6 +245,7 @@ if (!(onlyIfStale && fresh)) {
   if (!onlyIfStale) printSizes();
   rmSync(place, { recursive: true, force: true });
   renameSync(dist, place);
+  mkdirSync(dirname(stamp), { recursive: true });
   writeFileSync(stamp, hash);
   if (!onlyIfStale) {
     process.stdout.write(`${count} packages are bundled in; dist/NOTICES.txt has their licences\n`);

@@ -157,22 +157,21 @@ export function findAnchors(moves: Moves, classes: Classes, weight: Float64Array
     const root = classes.entry[k]!;
     mass[root] = 1;
     let active = Int32Array.of(root);
+    let best = root;
     for (let step = 0; step < steps && active.length <= WIDEST_WALK; step++) {
       const count = spread(moves, classes.classOf, weight, active, mass, coming, touched);
       active = touched.slice(0, count);
-      for (const state of active) {
+      for (let i = 0; i < count; i++) {
+        const state = active[i]!;
         mass[state] = coming[state]!;
         visits[state]! += coming[state]!;
         coming[state] = 0;
+        // Visits only grow, so that whoever leads at the end has led when last visited.
+        const more = visits[state]! - visits[best]!;
+        if (more > 0 || (more === 0 && state < best)) best = state;
       }
     }
-    for (const state of active) mass[state] = 0;
-    let best = root;
-    for (let i = classes.memberStart[k]!; i < classes.memberStart[k + 1]!; i++) {
-      const state = classes.members[i]!;
-      const more = visits[state]! - visits[best]!;
-      if (more > 0 || (more === 0 && state < best)) best = state;
-    }
+    for (let i = 0; i < active.length; i++) mass[active[i]!] = 0;
     anchors[k] = best;
   }
   return anchors;
@@ -192,8 +191,10 @@ function spread(
 ): number {
   const { columns, next, skip, usable } = moves;
   let count = 0;
-  for (const state of active) {
-    for (const column of usable) {
+  for (let i = 0; i < active.length; i++) {
+    const state = active[i]!;
+    for (let c = 0; c < usable.length; c++) {
+      const column = usable[c]!;
       const move = state * columns + column;
       if (skip[move] === 1) continue;
       const target = next[move]!;
