@@ -103,7 +103,7 @@ describe("--json", () => {
     expect(runs[0]).toMatchObject({
       signal: "at_once",
       arl: null,
-      reason: "it is not certain to be raised: the chance that it ever is, is 0.25",
+      reason: "it is not certain to be raised: with chance 0.25 it ever is",
       ever: near(0.25),
       relativeErrorBound: null,
       sdrl: null,
@@ -169,7 +169,7 @@ describe("what is asked for", () => {
       assess("oven.tocsin", ...options, "--after", "steady"),
     ].map(({ runs }) => runs) as [Row[], Row[]];
     expect(fresh).toMatchObject({ after: null, first: { weak: 1 } });
-    expect(later).toMatchObject({ after: "steady", first: null });
+    expect(later).toMatchObject({ after: "steady", first: { weak: 1 } });
     expect(later?.arl).toBeLessThan(fresh?.arl ?? 0);
     expect(tocsin(["assess", "oven.tocsin", ...options, "--after", "steady"]).stdout).toContain(
       "Signal act, from the long-run state under steady: trials until it is raised",
@@ -223,7 +223,7 @@ Signal pair: trials until it is raised
     const { stdout } = tocsin(["assess", "unsure.tocsin", "--signal", "at_once"]);
     expect(stdout).toMatch(/^ {2}fair {5}infinite /m);
     expect(stdout).toContain(
-      "\n  fair: the ARL is infinite, since it is not certain to be raised: the chance that it ever is, is 0.25\n",
+      "\n  fair: the ARL is not finite: it is not certain to be raised: with chance 0.25 it ever is\n",
     );
   });
 
@@ -231,7 +231,7 @@ Signal pair: trials until it is raised
     const { stdout } = tocsin(["assess", "two.tocsin", "--signal", "door_open"]);
     expect(stdout).toContain("2 states; signals hot, door_open; a trial every 1 h\n");
     expect(stdout).toMatch(/ mean time {2}signals a (day|week|year)\n/);
-    expect(stdout).toMatch(/^ {2}steady .* 4\.17 day +1\.68$/m);
+    expect(stdout).toMatch(/^ {2}steady .* 4\.17 days +1\.68$/m);
   });
 });
 
