@@ -82,8 +82,8 @@ function explain(policy: Policy, require: Require, worst: Verdict, wrong: number
   const data = {
     measure: measure.text,
     value: Number.isFinite(measured.value) ? measured.value : null,
-    low: Number.isFinite(measured.low) ? measured.low : null,
-    high: Number.isFinite(measured.high) ? measured.high : null,
+    low: rounded(measured.low),
+    high: rounded(measured.high),
     required: toDouble(require.requirement.value),
     at: worst.point ? worst.point.values.map(toDouble) : [],
   };
@@ -134,4 +134,9 @@ function pointWords(policy: Policy, point: Point | null): string {
   return parameters
     .map(({ name }, i) => `${name} = ${point.values[i] ? showNumber(point.values[i], 6) : "?"}`)
     .join(", ");
+}
+
+/** An end of a proven interval for tools: twelve digits, since what lies beyond them hangs on the order of the arithmetic. */
+function rounded(end: number): number | null {
+  return Number.isFinite(end) ? Number(end.toPrecision(12)) : null;
 }

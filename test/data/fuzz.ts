@@ -3,7 +3,7 @@
 
 import { type DataItem, readCsv } from "../../compiler/data/csv.ts";
 import type { Wanted } from "../../compiler/data/header.ts";
-import { seeded } from "../runtime/fuzz.ts";
+import { type Beat, type Fuzzed, seeded } from "../runtime/fuzz.ts";
 import { chunked, collect } from "./rows.ts";
 
 type Random = ReturnType<typeof seeded>;
@@ -58,19 +58,16 @@ async function read(bytes: Uint8Array, size: number): Promise<string> {
   return JSON.stringify(await collect(items));
 }
 
-export type FuzzedCsv = {
-  readonly count: number;
-  readonly seed: number;
-  /** How many of the executions had no problem. */
-  readonly accepted: number;
-};
-
-export async function fuzzCsv(count: number, seed: number): Promise<FuzzedCsv> {
+/** Accepted are the executions without a problem. */
+export async function fuzzCsv(count: number, seed: number, beat: Beat = () => {}): Promise<Fuzzed> {
   const random = seeded(seed);
   let accepted = 0;
   for (let i = 0; i < count; i++) {
+    beat(i);
     const bytes = draw(random);
-    const found = await read(bytes, 65536);
+    const found = await read(bytes, 65536).catch((cause: unknown) => {
+      throw new Error(`execution ${i} of seed ${seed}: ${JSON.stringify([...bytes])}`, { cause });
+    });
     if (found.endsWith('"problems":[]}')) accepted++;
     if (i % 16 !== 0) continue;
     const pieces = await read(bytes, 1 + random(5));

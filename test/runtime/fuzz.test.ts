@@ -4,9 +4,10 @@ import { readFileSync } from "node:fs";
 import { Ajv2020 } from "ajv/dist/2020.js";
 import { expect, test } from "vitest";
 import { openMachine } from "../../runtime/index.ts";
+import { seed } from "../oracle/arbitrary.ts";
 import { fuzzMachines, fuzzSnapshots, seeded, spoiltMachine } from "./fuzz.ts";
 
-const SEED = Number(process.env.FUZZ_SEED ?? 1);
+const SEED = seed();
 
 test.each([
   ["machine files", fuzzMachines],

@@ -124,10 +124,14 @@ function exercise(detector: Detector, random: Random): void {
   detector.clear();
 }
 
-function run(count: number, seed: number, once: (random: Random) => boolean): Fuzzed {
+/** Told of each execution as it begins, so that one that never ends is known. */
+export type Beat = (execution: number) => void;
+
+function run(count: number, seed: number, beat: Beat, once: (random: Random) => boolean): Fuzzed {
   const random = seeded(seed);
   let accepted = 0;
   for (let i = 0; i < count; i++) {
+    beat(i);
     try {
       if (once(random)) accepted++;
     } catch (error) {
@@ -137,9 +141,9 @@ function run(count: number, seed: number, once: (random: Random) => boolean): Fu
   return { count, seed, accepted };
 }
 
-export function fuzzMachines(count: number, seed: number): Fuzzed {
+export function fuzzMachines(count: number, seed: number, beat: Beat = () => {}): Fuzzed {
   const texts = SEEDS.map((file) => JSON.stringify(file));
-  return run(count, seed, (random) => {
+  return run(count, seed, beat, (random) => {
     const pick = random(SEEDS.length);
     const { machine, problems } = openMachine(draw(SEEDS[pick], texts[pick]!, random));
     if ((machine === undefined) !== problems.length > 0) throw new Error("neither a machine nor a problem");
@@ -148,9 +152,9 @@ export function fuzzMachines(count: number, seed: number): Fuzzed {
   });
 }
 
-export function fuzzSnapshots(count: number, seed: number): Fuzzed {
+export function fuzzSnapshots(count: number, seed: number, beat: Beat = () => {}): Fuzzed {
   const detectors = SEEDS.map((file) => new Detector(openMachine(file).machine!, { why: true, remember: 5 }));
-  return run(count, seed, (random) => {
+  return run(count, seed, beat, (random) => {
     const detector = detectors[random(detectors.length)]!;
     if (random(50) === 0) exercise(detector, random);
     const good = detector.snapshot();
