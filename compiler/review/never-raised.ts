@@ -12,7 +12,7 @@ export function checkNeverRaised(policy: Policy, machine: Machine, mostStates: n
   const raised = machine.output.reduce((mask, output) => mask | output, 0);
   return policy.signals.flatMap((signal, index) => {
     if ((raised >>> index) & 1) return [];
-    const cause = causeOf(policy, index, mostStates);
+    const cause = causeOf(policy, signal, mostStates);
     return diagnose("signal_never", signal.span, `"${signal.name}" can never be raised: ${cause}`, {
       hint: `change its condition or what prevents it, or remove the signal`,
       data: { signal: signal.name, cause },
@@ -21,28 +21,27 @@ export function checkNeverRaised(policy: Policy, machine: Machine, mostStates: n
 }
 
 /** In words, what keeps a signal from ever being raised. */
-function causeOf(policy: Policy, index: number, mostStates: number): string {
-  const { condition } = policy.signals[index] as Signal;
-  const raisable = (changed: Policy) => {
+function causeOf(whole: Policy, signal: Signal, mostStates: number): string {
+  // Signals that do not restart leave the memory of others alone.
+  const signals = whole.signals.filter((other) => other === signal || other.response === "restart");
+  const policy: Policy = { ...whole, signals };
+  /** Whether it is raised where all is as it is but for some of the suspects; null where that is too large to tell. */
+  const raisedWithout = (some: readonly Suspect[]): boolean | null => {
+    const changed = some.reduce<Policy>((left, { remove }) => remove(left), policy);
     const { value } = buildMachine(changed, { mostStates });
-    return value?.output.some((output) => ((output >>> index) & 1) === 1) ?? false;
+    const at = changed.signals.indexOf(signal);
+    return value ? value.output.some((output) => ((output >>> at) & 1) === 1) : null;
   };
-  const suspects = suspectsOf(policy, index);
-  if (!raisable(without(policy, suspects)))
-    return `no string of trials makes its condition "${condition.text}" hold`;
+  const suspects = suspectsOf(policy, signal);
+  const condition = `"${signal.condition.text}"`;
+  if (raisedWithout(suspects) === false) return `no string of trials makes its condition ${condition} hold`;
   const names = (found: readonly Suspect[]) => found.map(({ name }) => name).join(" and ");
-  const end = `its memory before "${condition.text}" can hold`;
-  const needed = suspects.filter((suspect) => raisable(without(policy, [suspect])));
+  const end = `its memory before ${condition} can hold`;
+  const needed = suspects.filter((suspect) => raisedWithout([suspect]) === true);
   if (needed.length === 1) return `${names(needed)} clears ${end}`;
   if (needed.length > 1) return `${names(needed)} between them clear ${end}`;
   const enough = suspects.filter(
-    (suspect) =>
-      !raisable(
-        without(
-          policy,
-          suspects.filter((other) => other !== suspect),
-        ),
-      ),
+    (suspect) => raisedWithout(suspects.filter((other) => other !== suspect)) === false,
   );
   if (enough.length > 1) return `${names(enough)} each clear ${end}`;
   return `${names(suspects)} between them clear ${end}`;
@@ -51,11 +50,7 @@ function causeOf(policy: Policy, index: number, mostStates: number): string {
 /** Something that may clear the memory of a signal from outside, and the policy without it. */
 type Suspect = { readonly name: string; readonly remove: (policy: Policy) => Policy };
 
-function without(policy: Policy, suspects: readonly Suspect[]): Policy {
-  return suspects.reduce((left, { remove }) => remove(left), policy);
-}
-
-function suspectsOf(policy: Policy, index: number): Suspect[] {
+function suspectsOf(policy: Policy, signal: Signal): Suspect[] {
   const suspects: Suspect[] = [];
   if (policy.clearBefore)
     suspects.push({ name: "`clear before`", remove: (from) => ({ ...from, clearBefore: null }) });
@@ -66,19 +61,11 @@ function suspectsOf(policy: Policy, index: number): Suspect[] {
     });
   if (policy.block)
     suspects.push({ name: `\`blocks of ${policy.block}\``, remove: (from) => ({ ...from, block: null }) });
-  policy.signals.forEach((other, at) => {
-    if (at !== index && other.response === "restart")
-      suspects.push({ name: `the restart of "${other.name}"`, remove: (from) => withOwnResponse(from, at) });
-  });
+  for (const other of policy.signals)
+    if (other !== signal && other.response === "restart")
+      suspects.push({
+        name: `the restart of "${other.name}"`,
+        remove: (from) => ({ ...from, signals: from.signals.filter((one) => one !== other) }),
+      });
   return suspects;
-}
-
-/** The policy with one signal's restart taken back to clearing its own memory. */
-function withOwnResponse(policy: Policy, at: number): Policy {
-  return {
-    ...policy,
-    signals: policy.signals.map((signal, index) =>
-      index === at ? { ...signal, response: "own" as const } : signal,
-    ),
-  };
 }

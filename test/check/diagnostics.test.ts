@@ -47,11 +47,17 @@ function expectation(diagnostics: readonly Diagnostic[]): string {
   return `${rendered}\n\n${rows.join("\n")}\n`;
 }
 
+/** Of what was measured ten digits: further ones tell how close a bound is, which a better solver may change. */
+function steady(name: string, text: string): string {
+  if (!name.startsWith("require_")) return text;
+  return text.replace(/\d+\.\d{10,}/g, (number) => `${Number(number).toPrecision(10)}…`);
+}
+
 describe("golden diagnostics", () => {
   test.each(cases)("%s", (name) => {
     const diagnostics = judge(name);
     expect(diagnostics.map(({ code }) => code)).toContain(codeOf(name));
-    expectGolden(join(FOLDER, `${name}.expect`), expectation(diagnostics));
+    expectGolden(join(FOLDER, `${name}.expect`), steady(name, expectation(diagnostics)));
   });
 
   test("every code has a case, and every case a code", () => {

@@ -144,3 +144,10 @@ describe("a header that does not fit", () => {
     expect(replay("x\n")).toEqual({ status: 0, stdout: "0 trials; signals raised: s 0\n", stderr: "" });
   });
 });
+
+test("more streams than memory is kept for are refused, not begun", () => {
+  const rows = Array.from({ length: 50_001 }, (_, i) => `2,s${i}\n`);
+  const { status, stdout, stderr } = replay(`x,s\n${rows.join("")}`, "--stream", "s");
+  expect({ status, stdout }).toEqual({ status: 2, stdout: "" });
+  expect(stderr).toBe("tocsin: data.csv: more than 50,000 streams: replay the data in parts\n");
+});
