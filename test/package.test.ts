@@ -84,7 +84,7 @@ describe("the installed package", () => {
       import { compile, machineFile } from "tocsin";
       import { Detector, openMachine } from "tocsin/runtime";
       const { policy, machine } = compile(readFileSync("two_high.tocsin", "utf8"));
-      const byLibrary = machineFile(policy, machine).value;
+      const byLibrary = machineFile(policy, machine);
       const byCommand = JSON.parse(readFileSync("two_high.json", "utf8"));
       const detector = new Detector(openMachine(byCommand).machine);
       const raised = [2, 1, 2, 2].map((value) => detector.observe(value));

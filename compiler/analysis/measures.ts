@@ -1,6 +1,7 @@
 /** The measures of the language, at one point of a process: a value, and an interval that holds the true one. */
 import Fraction from "fraction.js";
 import { type Diagnostic, diagnose, type Outcome } from "../../grammar/diagnostic.ts";
+import type { Span } from "../../grammar/span.ts";
 import { toDouble } from "../chance/quantity.ts";
 import type { Measure } from "../policy.ts";
 import type { Assessor, Letters, Point, SignalChoice } from "./assessor.ts";
@@ -52,9 +53,7 @@ function startOf(assessor: Assessor, measure: Measure, signal: SignalChoice): Ou
   if (!after?.values) return { diagnostics: [] };
   const letters = assessor.lettersAt({ process: after.process, values: after.values }, after.span);
   if (!letters.value) return { diagnostics: letters.diagnostics };
-  return longRunStart(assessor, signal, letters.value, (reason) =>
-    diagnose("measure_undefined", after.span, `there is no long-run state to begin from: ${reason}`),
-  );
+  return longRunStart(assessor, signal, letters.value, after.span);
 }
 
 /** The law of the memory in the long run, given that the signal has not been raised. */
@@ -62,12 +61,18 @@ export function longRunStart(
   assessor: Assessor,
   signal: SignalChoice,
   letters: Letters,
-  explain: (reason: string) => Diagnostic,
+  span: Span,
 ): Outcome<StateLaw> {
   const { machine } = assessor;
   const columns = assessor.columnsAt(letters, machine.columnOf, machine.columns);
   const found = longRunLaw(machine, raises(signal), columns);
-  return "law" in found ? { value: found.law, diagnostics: [] } : failed(explain(found.reason));
+  return "law" in found
+    ? { value: found.law, diagnostics: [] }
+    : failed(
+        diagnose("measure_undefined", span, `there is no long-run state to begin from: ${found.reason}`, {
+          hint: "measure it from the start, without `after`",
+        }),
+      );
 }
 
 function measureFrom(

@@ -1,6 +1,7 @@
 /**
  * Which statistics a policy reads: those on whose letter some SET of its signals and clears hangs.
- * In: the conditions and SETs. Out: a flag for each alphabet. A statistic that is not read may be left out of a process.
+ * In: the conditions and SETs. Out: the SETs, and a flag for each alphabet. A statistic that is not read may be left out of a
+ * process; letters that no SET tells apart are one column of the machine.
  */
 import type { Condition, Pattern, Signal, TrialSet } from "../policy.ts";
 import { dependsOn, type Trials } from "./trials.ts";
@@ -12,7 +13,13 @@ type Reader = {
 };
 
 /** Whether each alphabet is read. */
-export function alphabetsRead({ signals, clearBefore, clearAfter }: Reader, trials: Trials): boolean[] {
+export function alphabetsRead(reader: Reader, trials: Trials): boolean[] {
+  const sets = setsRead(reader);
+  return trials.sizes.map((_, alphabet) => [...sets].some((set) => dependsOn(trials, set, alphabet)));
+}
+
+/** The SETs of all signals and clears: what a machine can tell trials apart by. */
+export function setsRead({ signals, clearBefore, clearAfter }: Reader): ReadonlySet<TrialSet> {
   const sets = new Set<TrialSet>(clearBefore === null ? [] : [clearBefore]);
   const seen = new Set<Condition>();
   for (const condition of clearAfter) collect(condition, sets, seen);
@@ -20,7 +27,7 @@ export function alphabetsRead({ signals, clearBefore, clearAfter }: Reader, tria
     collect(condition, sets, seen);
     if (quiet?.kind === "until") collect(quiet.condition, sets, seen);
   }
-  return trials.sizes.map((_, alphabet) => [...sets].some((set) => dependsOn(trials, set, alphabet)));
+  return sets;
 }
 
 /** Gathers the SETs of a condition; rules that are mentioned often are looked into once. */
@@ -53,6 +60,9 @@ function collect(condition: Condition, sets: Set<TrialSet>, seen: Set<Condition>
       return;
     case "rule":
       collect(condition.condition, sets, seen);
+      return;
+    default:
+      condition satisfies never;
   }
 }
 
@@ -69,5 +79,8 @@ function collectPattern(pattern: Pattern, sets: Set<TrialSet>): void {
       return;
     case "repeat":
       collectPattern(pattern.operand, sets);
+      return;
+    default:
+      pattern satisfies never;
   }
 }

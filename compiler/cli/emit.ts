@@ -15,16 +15,15 @@ export function runEmit(
   const broken = checkContracts(policy, machine, options.maxStates).filter(
     ({ severity }) => severity === "error",
   );
-  const { value, diagnostics } = machineFile(policy, machine);
-  if (!value || hasErrors(broken)) {
-    showDiagnostics([...broken, ...diagnostics], process.stderr);
+  if (hasErrors(broken)) {
+    showDiagnostics(broken, process.stderr);
     throw new Stop(EXIT.findings);
   }
-  const text = `${JSON.stringify(value)}\n`;
+  const text = `${JSON.stringify(machineFile(policy, machine))}\n`;
   if (options.output === undefined) {
     process.stdout.write(text);
     return;
   }
   writeWhole(options.output, text);
-  say(`${options.output}: ${policy.name}, ${machine.states} states, ${text.length} bytes`);
+  say(`${options.output}: ${policy.name}, ${machine.states} states, ${Buffer.byteLength(text)} bytes`);
 }

@@ -15,9 +15,8 @@ import {
 import { machineFile } from "../emit/machine-file.ts";
 import type { Machine } from "../machine/automaton.ts";
 import type { Policy } from "../policy.ts";
-import { EXIT, Stop, UsageError } from "./exit.ts";
+import { UsageError } from "./exit.ts";
 import { demandWritable, readText, writeWhole } from "./files.ts";
-import { showDiagnostics } from "./output.ts";
 
 const STATE_FORMAT = "tocsin-replay";
 const STATE_VERSION = 1;
@@ -79,12 +78,7 @@ export function makeStreams(policy: Policy, machine: Machine, options: Options):
 }
 
 function open(policy: Policy, machine: Machine): OpenMachine {
-  const { value, diagnostics } = machineFile(policy, machine);
-  if (!value) {
-    showDiagnostics(diagnostics, process.stderr);
-    throw new Stop(EXIT.findings);
-  }
-  const opened = openMachine(value);
+  const opened = openMachine(machineFile(policy, machine));
   if (!opened.machine) throw new Error(`the machine file was refused: ${JSON.stringify(opened.problems)}`);
   return opened.machine;
 }

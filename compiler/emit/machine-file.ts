@@ -4,7 +4,6 @@
  */
 import { sha256 } from "@noble/hashes/sha2.js";
 import { bytesToHex, utf8ToBytes } from "@noble/hashes/utils.js";
-import { type Diagnostic, diagnose, type Outcome } from "../../grammar/diagnostic.ts";
 import { parse } from "../../grammar/parse.ts";
 import { print } from "../../grammar/print.ts";
 import {
@@ -24,10 +23,8 @@ import { type Compiler, componentOf, makeCompiler } from "../machine/component.t
 import { type FormulaNode, formulaOf, nameOf } from "../machine/formula.ts";
 import type { Alphabet, Policy, Signal } from "../policy.ts";
 
-/** The machine file of a policy, or which of its cuts a double cannot tell apart. */
-export function machineFile(policy: Policy, machine: Machine): Outcome<MachineFile> {
-  const diagnostics = policy.alphabets.flatMap(collidingCuts);
-  if (diagnostics.length > 0) return { diagnostics };
+/** The machine file of a policy; that its cuts differ as doubles was checked with the policy. */
+export function machineFile(policy: Policy, machine: Machine): MachineFile {
   const content = {
     statistics: policy.alphabets.map(statisticOf),
     missing: policy.missing,
@@ -42,14 +39,13 @@ export function machineFile(policy: Policy, machine: Machine): Outcome<MachineFi
     },
     reasons: reasonsOf(policy),
   };
-  const file: MachineFile = {
+  return {
     format: MACHINE_FORMAT,
     version: MACHINE_VERSION,
     policy: { name: policy.name, title: policy.title, source: sourceHash(policy) },
     id: hashOf(JSON.stringify(content)),
     ...content,
   };
-  return { value: file, diagnostics: [] };
 }
 
 /** SHA-256 of the canonical text of the policy and, after it, of its libraries in the order they were reached. */
@@ -59,24 +55,6 @@ function sourceHash(policy: Policy): string {
 
 function hashOf(text: string): string {
   return bytesToHex(sha256(utf8ToBytes(text)));
-}
-
-/** Cuts that differ and become one double: no value would be left for the letter between them, or it would have two. */
-function collidingCuts(alphabet: Alphabet): Diagnostic[] {
-  return alphabet.cuts.flatMap((cut, index) => {
-    const before = alphabet.cuts[index - 1];
-    if (!before || doubleOf(before.at.value) < doubleOf(cut.at.value) || before.at.value.equals(cut.at.value))
-      return [];
-    return diagnose(
-      "cuts_collide",
-      cut.span,
-      `two cuts of "${alphabet.name}" become ${doubleOf(cut.at.value)} as doubles`,
-      {
-        hint: "move the cuts apart, or leave out the letter between them",
-        related: [{ span: before.span, message: "the other cut" }],
-      },
-    );
-  });
 }
 
 function statisticOf(alphabet: Alphabet): StatisticInFile {

@@ -51,6 +51,9 @@ export function buildAttributedMachine(
   });
 }
 
+/** A condition in a message is cut after so many characters. */
+const LONGEST_SHOWN = 200;
+
 /** Gives out what one trial raised, from the outputs of all signals. */
 type Combine = (raised: Int32Array, signals: readonly SignalAutomaton[]) => number;
 
@@ -178,13 +181,17 @@ function tooManyStates(
   const [first] = policy.signals;
   const span = culprit?.span ?? first?.span ?? { source: policy.source, start: 0, end: 0 };
   const what = culprit
-    ? `"${culprit.text}"`
+    ? `"${shorten(culprit.text)}"`
     : `the signals ${policy.signals.map((s) => s.name).join(", ")} together`;
   const hint = culprit
     ? "use smaller counts or windows, or say it with `gap`, `within` or fewer letters; `--max-states N` raises the budget"
     : "shorten quiet times and windows, use `restart` so that signals share a start, or split the policy in two; `--max-states N` raises the budget";
   return diagnose("too_many_states", span, `${what} would need ${about} states; the budget is ${budget}`, {
     hint,
-    data: { condition: culprit?.text ?? null, estimate, budget: mostStates },
+    data: { condition: culprit ? shorten(culprit.text) : null, estimate, budget: mostStates },
   });
+}
+
+function shorten(text: string): string {
+  return text.length > LONGEST_SHOWN ? `${text.slice(0, LONGEST_SHOWN)}…` : text;
 }

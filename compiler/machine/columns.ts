@@ -4,7 +4,8 @@
  *
  * Columns are numbered in the order of their first symbols.
  */
-import type { Condition, Pattern, Policy, TrialSet } from "../policy.ts";
+import { setsRead } from "../check/reading.ts";
+import type { Policy, TrialSet } from "../policy.ts";
 import type { Automaton } from "./automaton.ts";
 import { numberOf } from "./numbering.ts";
 
@@ -18,15 +19,7 @@ export type Columns = {
 
 /** The columns that the conditions and clears of a policy tell apart. */
 export function columnsOf(policy: Policy): Columns {
-  const sets = new Set<TrialSet>();
-  const seen = new Set<Condition>();
-  for (const signal of policy.signals) {
-    collectSets(signal.condition, sets, seen);
-    if (signal.quiet?.kind === "until") collectSets(signal.quiet.condition, sets, seen);
-  }
-  for (const condition of policy.clearAfter) collectSets(condition, sets, seen);
-  if (policy.clearBefore) sets.add(policy.clearBefore);
-  return classify(policy.symbols, sets);
+  return classify(policy.symbols, setsRead(policy));
 }
 
 function classify(symbols: number, sets: Iterable<TrialSet>): Columns {
@@ -43,60 +36,6 @@ function classify(symbols: number, sets: Iterable<TrialSet>): Columns {
     if (symbolOf[column] === -1) symbolOf[column] = symbol;
   });
   return { count, columnOf, symbolOf };
-}
-
-function collectSets(condition: Condition, sets: Set<TrialSet>, seen: Set<Condition>): void {
-  if (seen.has(condition)) return;
-  seen.add(condition);
-  switch (condition.kind) {
-    case "set":
-    case "run":
-    case "scan":
-      sets.add(condition.set);
-      return;
-    case "weakRun":
-      sets.add(condition.set).add(condition.failures);
-      return;
-    case "pattern":
-      collectPatternSets(condition.pattern, sets);
-      return;
-    case "separate":
-    case "overlapping":
-    case "not":
-      collectSets(condition.operand, sets, seen);
-      return;
-    case "then":
-    case "unless":
-    case "and":
-    case "or":
-      collectSets(condition.left, sets, seen);
-      collectSets(condition.right, sets, seen);
-      return;
-    case "rule":
-      collectSets(condition.condition, sets, seen);
-      return;
-    default:
-      condition satisfies never;
-  }
-}
-
-function collectPatternSets(pattern: Pattern, sets: Set<TrialSet>): void {
-  switch (pattern.kind) {
-    case "letters":
-      sets.add(pattern.set);
-      return;
-    case "choice":
-      for (const option of pattern.options) collectPatternSets(option, sets);
-      return;
-    case "sequence":
-      for (const item of pattern.items) collectPatternSets(item, sets);
-      return;
-    case "repeat":
-      collectPatternSets(pattern.operand, sets);
-      return;
-    default:
-      pattern satisfies never;
-  }
 }
 
 /** A set of trials by column. */

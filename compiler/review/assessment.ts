@@ -3,7 +3,7 @@
  * all there is to know of one run length; nothing is rounded here.
  */
 import Fraction from "fraction.js";
-import { type Diagnostic, diagnose, hasErrors, type Outcome } from "../../grammar/diagnostic.ts";
+import { type Diagnostic, hasErrors, type Outcome } from "../../grammar/diagnostic.ts";
 import type { Span } from "../../grammar/span.ts";
 import {
   type Assessor,
@@ -133,9 +133,7 @@ function startFor(
 ): Outcome<{ letters: Letters; law: StateLaw }> {
   const letters = assessor.lettersAt({ process: after.process, values: after.values ?? [] }, after.span);
   if (!letters.value) return { diagnostics: letters.diagnostics };
-  const { value: law, diagnostics } = longRunStart(assessor, signal, letters.value, (reason) =>
-    diagnose("measure_undefined", after.span, `there is no long-run state to begin from: ${reason}`),
-  );
+  const { value: law, diagnostics } = longRunStart(assessor, signal, letters.value, after.span);
   return law ? { value: { letters: letters.value, law }, diagnostics } : { diagnostics };
 }
 

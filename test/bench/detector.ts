@@ -17,7 +17,7 @@ signal s when beyond or two or four or eight
 
 export function benchDetector(): Figure[] {
   const { policy, machine } = compile(POLICY);
-  const file = policy && machine ? machineFile(policy, machine).value : undefined;
+  const file = policy && machine ? machineFile(policy, machine) : undefined;
   const opened = openMachine(file);
   if (!file || !opened.machine) throw new Error("no machine");
   const values = normalValues();

@@ -151,8 +151,7 @@ function judgeMachine(text: string): void {
   const { policy, machine } = compilation;
   judgeSpans(findingsOf(compilation, MOST_STATES));
   if (!policy || !machine) return;
-  const { value } = machineFile(policy, machine);
-  const { problems } = openMachine(JSON.parse(JSON.stringify(value)));
+  const { problems } = openMachine(JSON.parse(JSON.stringify(machineFile(policy, machine))));
   demand(problems.length === 0, `its machine file is refused: ${JSON.stringify(problems)}`);
 }
 

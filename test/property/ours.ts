@@ -40,7 +40,7 @@ export function ours(text: string, mostStates = 100_000): Ours | null {
     const words = errors.map(({ code, message }) => `${code}: ${message}`).join("\n");
     throw new Error(`the policy does not compile\n${words}\n\n${text}`);
   }
-  const { machine: open, problems } = openMachine(JSON.stringify(machineFile(policy, machine).value));
+  const { machine: open, problems } = openMachine(JSON.stringify(machineFile(policy, machine)));
   if (open === undefined) throw new Error(`the machine file is refused: ${JSON.stringify(problems)}`);
   let attributed: AttributedMachine | null | undefined;
   return {

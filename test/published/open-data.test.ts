@@ -94,7 +94,7 @@ function lettersByHand(): Row[] {
 
 it("the detector on real weather says what the slow twin says, and why", async () => {
   const { policy, machine } = compiled(TEXT);
-  const opened = openMachine(machineFile(policy, machine).value);
+  const opened = openMachine(machineFile(policy, machine));
   if (!opened.machine) throw new Error("refused");
   const detector = new Detector(opened.machine, { why: true });
   const statistics = policy.alphabets.map(({ name, kind }) => ({ name, kind }));
